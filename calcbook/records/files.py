@@ -1,0 +1,28 @@
+"""Atomic files: a reader sees the old content or the new, never half of it."""
+
+from __future__ import annotations
+
+import os
+import tempfile
+from pathlib import Path
+
+from calcbook.errors import WorkspaceFault
+
+
+def write_atomically(path: Path, content: str | bytes) -> None:
+    """Write a file beside its place and move it there; raises WorkspaceFault where the disk refuses."""
+    data = content.encode("utf-8") if isinstance(content, str) else content
+    temporary = ""
+    try:
+        path.parent.mkdir(parents=True, exist_ok=True)
+        descriptor, temporary = tempfile.mkstemp(dir=path.parent, prefix=f".{path.name}.")
+        with os.fdopen(descriptor, "wb") as file:
+            file.write(data)
+            file.flush()
+            os.fsync(file.fileno())
+        Path(temporary).chmod(0o644)
+        Path(temporary).replace(path)
+    except OSError as error:
+        if temporary:
+            Path(temporary).unlink(missing_ok=True)
+        raise WorkspaceFault(f"{path}: cannot be written ({error.strerror or error})") from error
