@@ -40,4 +40,4 @@ def in_unit(number: float, unit: str, kind: str) -> Quantity:
 @cache
 def dimension(unit: str) -> Any:
     """The dimension of a unit, a container that multiplies, divides and takes powers."""
-    return _registry().get_dimensionality(UNITS[unit].pint_name)
+    return _registry().Quantity(1.0, UNITS[unit].pint_name).dimensionality

@@ -1,0 +1,117 @@
+"""What a formula is: a written form with its symbols, where it comes from, and a worked example."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from functools import cached_property
+
+from calcbook.errors import DimensionFault
+from calcbook.records.dimension import coherent_number, in_unit
+from calcbook.records.notation import Name, named, out_of_range, range_in_words
+from calcbook.records.quantity import Quantity, read_quantity
+from calcbook.records.units import UNITS, kind_in_words
+from calcbook.records.written.algebra import number_function
+from calcbook.records.written.dimensions import check_dimensions
+from calcbook.records.written.evaluate import evaluate, rounding_scale
+from calcbook.records.written.tree import Node, parse, symbols_of
+
+
+@dataclass(frozen=True)
+class Example:
+    """A worked example: inputs by symbol, the result as printed by its source, and the source."""
+
+    inputs: Mapping[str, str]
+    result: str
+    source: str = "our own arithmetic, not a published example"
+
+
+@dataclass(frozen=True)
+class Formula:
+    """One formula, one page.
+
+    `result` and every symbol of `written` are names of the notation list, which gives their unit, kind and range.
+    `derivation` names the derivation that proves it, or `citation` the standard's clause that states it: one of the two
+    is required. `reference` is what stands in the left column of a sheet. `published` names the sources of the
+    published examples it is tested with; empty is printed as "no published example".
+    """
+
+    name: str
+    purpose: str
+    result: str
+    written: str
+    valid: str
+    reference: str
+    example: Example
+    derivation: str = ""
+    citation: str = ""
+    published: tuple[str, ...] = ()
+
+    @cached_property
+    def tree(self) -> Node:
+        """The written form as a tree, its dimensions checked once."""
+        tree = parse(self.written)
+        check_dimensions(tree, {name.name: name.unit for name in self.symbols}, self.result_name.unit)
+        return tree
+
+    @cached_property
+    def symbols(self) -> tuple[Name, ...]:
+        """The notation entries of the symbols, in the order in which they are written."""
+        return tuple(named(symbol.name) for symbol in symbols_of(parse(self.written)))
+
+    @property
+    def result_name(self) -> Name:
+        """The notation entry of the result."""
+        return named(self.result)
+
+    def check(self, quantities: Mapping[str, Quantity]) -> None:
+        """Kinds and ranges of what is bound to the symbols; DimensionFault names the symbol and what it needs."""
+        wanted = {entry.name for entry in self.symbols}
+        if wanted != set(quantities):
+            missing, extra = sorted(wanted - set(quantities)), sorted(set(quantities) - wanted)
+            faults = [f"lacks {name}" for name in missing] + [f"does not know {name}" for name in extra]
+            raise DimensionFault(f"formula {self.name} {' and '.join(faults)}; it takes {', '.join(sorted(wanted))}")
+        for entry in self.symbols:
+            quantity = quantities[entry.name]
+            if quantity.kind != entry.kind:
+                raise DimensionFault(
+                    f"formula {self.name}: {entry.name} needs {kind_in_words(entry.kind)}, "
+                    f"got {kind_in_words(quantity.kind)} ({quantity.number:g} {quantity.unit})"
+                )
+            fault = out_of_range(entry, in_unit(coherent_number(quantity), entry.unit, entry.kind))
+            if fault:
+                raise DimensionFault(f"formula {self.name}: {fault}")
+
+    def evaluate(self, quantities: Mapping[str, Quantity]) -> tuple[Quantity, float]:
+        """The result by the algebra's function, and beside it the written form's own number (coherent unit).
+
+        Raises DimensionFault where kinds or ranges do not fit or where the two numbers differ by more than 1e-12 of
+        the line's largest term, EvaluationFault where there is no finite real number.
+        """
+        self.check(quantities)
+        values = {entry.name: coherent_number(quantities[entry.name]) for entry in self.symbols}
+        second = evaluate(self.tree, values)
+        first = float(number_function(self.written)(*values.values()))
+        allowed = 1e-12 * rounding_scale(self.tree, values)
+        if abs(first - second) > allowed:
+            raise DimensionFault(f"formula {self.name}: algebra gives {first!r}, the written form {second!r}")
+        return in_unit(first, self.result_name.unit, self.result_name.kind), second
+
+    def example_inputs(self) -> dict[str, Quantity]:
+        """The inputs of the worked example as quantities."""
+        return {name: read_quantity(text, named(name).kind) for name, text in self.example.inputs.items()}
+
+    def page(self) -> str:
+        """The formula's page, made from the data above: purpose, form, symbols, range, source, example."""
+        lines = [self.purpose, "", f"    {self.result} = {self.written}", ""]
+        for entry in (*self.symbols, self.result_name):
+            unit = UNITS[entry.unit].printed or "-"
+            allowed = f", {range_in_words(entry.range)}" if entry.range else ""
+            lines.append(f"    {entry.name:8} {entry.description} [{unit}{allowed}]")
+        lines += ["", f"Valid     {self.valid}"]
+        source = f"derived, sheet D-{self.derivation}" if self.derivation else self.citation
+        lines.append(f"Source    {source}")
+        inputs = ", ".join(f"{name} = {text}" for name, text in self.example.inputs.items())
+        lines.append(f"Example   {inputs} -> {self.result} = {self.example.result} ({self.example.source})")
+        lines.append(f"Published {'; '.join(self.published) or 'no published example'}")
+        return "\n".join(lines)

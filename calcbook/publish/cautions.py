@@ -1,0 +1,41 @@
+"""What every sheet says of its own limits."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+
+from calcbook.records.line import ConclusionLine, Line, TableLine
+
+GENERAL = (
+    "Results need review by a competent and, where required, licensed person.",
+    "Local codes and their current editions govern.",
+    "Table values must be compared with the licensed text.",
+)
+NOT_COMPARED = "not compared with a licensed copy"
+NOT_FOR_ISSUE = "failed, not for issue"
+
+
+def table_name(line: TableLine) -> str:
+    """A table as it is cited: standard with edition, and its number."""
+    citation = line.citation
+    standard = f"{citation.standard}:{citation.edition}" if citation.edition else citation.standard
+    return f"{standard}, {numbered(citation.table)}"
+
+
+def numbered(table: str) -> str:
+    """A table's number with the word before it."""
+    return table if table.lower().startswith("table") else f"Table {table}"
+
+
+def of_sheet(lines: Iterable[Line]) -> tuple[str, ...]:
+    """The cautions of one sheet: those of its conclusion, and its tables that nobody has signed off."""
+    found: list[str] = []
+    tables: list[str] = []
+    for line in lines:
+        if isinstance(line, ConclusionLine):
+            found.extend(line.cautions)
+        if isinstance(line, TableLine) and line.citation.signed_off is None:
+            tables.append(table_name(line))
+    if tables:
+        found.append(f"Values {NOT_COMPARED}: {'; '.join(dict.fromkeys(tables))}.")
+    return tuple(dict.fromkeys(found))

@@ -1,0 +1,155 @@
+"""A sheet ready for print: the texts, and where they stand. HTML and PDF are made from this and from nothing else."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+
+from calcbook.records.project import TitleBlock
+from calcbook.records.result import Failure
+from calcbook.records.written.layout import Texts
+from calcbook.records.written.tree import Node
+
+
+@dataclass(frozen=True)
+class Span:
+    """A piece of running text; with `symbol` the text is the label of a symbol and is set as one."""
+
+    text: str
+    link: str = ""
+    symbol: bool = False
+    strong: bool = False
+
+
+Paragraph = tuple[Span, ...]
+
+
+@dataclass(frozen=True)
+class Formula:
+    """A formula: with its symbols, or, where `texts` are given, with values that link to the lines they come from."""
+
+    node: Node
+    texts: Texts | None = None
+    links: Mapping[str, str] = field(default_factory=dict)
+
+
+@dataclass(frozen=True)
+class Equation:
+    """One line of mathematics: left side, sign, right side; a left side left out repeats the one above."""
+
+    left: Formula | Span | None
+    sign: str
+    right: Formula | Span
+
+
+@dataclass(frozen=True)
+class DataRow:
+    """A datum or a choice: one row of a compact table."""
+
+    anchor: str
+    label: str
+    description: str
+    value: Span
+    place: str
+    document: str
+    status: str
+    remark: str
+
+
+@dataclass(frozen=True)
+class WorkRow:
+    """A line of working: reference column, working with its description and notes, result column."""
+
+    anchor: str
+    reference: tuple[Paragraph, ...]
+    description: str
+    equations: tuple[Equation, ...]
+    notes: tuple[Paragraph, ...]
+    result: tuple[Paragraph, ...]
+
+
+@dataclass(frozen=True)
+class Text:
+    """A paragraph of the template."""
+
+    spans: Paragraph
+
+
+@dataclass(frozen=True)
+class Heading:
+    """A heading below that of the section."""
+
+    title: str
+
+
+@dataclass(frozen=True)
+class DataTable:
+    """Data lines that stand together."""
+
+    rows: tuple[DataRow, ...]
+
+
+@dataclass(frozen=True)
+class WorkTable:
+    """Lines of working that stand together."""
+
+    rows: tuple[WorkRow, ...]
+
+
+Item = Text | Heading | DataTable | WorkTable
+
+
+@dataclass(frozen=True)
+class Section:
+    """A part of a sheet under one heading."""
+
+    title: str
+    items: tuple[Item, ...]
+
+
+@dataclass(frozen=True)
+class CriterionRow:
+    """A criterion in the summary, with whether it governs."""
+
+    description: Span
+    sides: tuple[Span, ...]
+    utilisation: str
+    verdict: str
+    governs: bool
+
+
+@dataclass(frozen=True)
+class HeadroomRow:
+    """How far a datum may move."""
+
+    criterion: Span
+    datum: Span
+    symbol: str
+    present: str
+    limit: str
+    remark: str
+
+
+@dataclass(frozen=True)
+class Summary:
+    """The end of a sheet; `verdict` in a sentence."""
+
+    verdict: str
+    governing: str
+    criteria: tuple[CriterionRow, ...]
+    headrooms: tuple[HeadroomRow, ...]
+    open_items: tuple[str, ...]
+
+
+@dataclass(frozen=True)
+class SheetView:
+    """One sheet; `cautions` are its own, the general ones stand in the footer of every page."""
+
+    number: str
+    title: str
+    block: TitleBlock
+    version: str
+    sections: tuple[Section, ...]
+    summary: Summary | None
+    cautions: tuple[str, ...]
+    failure: Failure | None
