@@ -19,11 +19,6 @@ def _as_bytes(match: re.Match[str]) -> str:
     return "".join(f"~{byte:02X}" for byte in match[0].encode("utf-8"))
 
 
-def label_of(rests_on: str) -> str:
-    """The label of a line from its id ("C-014/cable-current/I_Z") or from the label itself."""
-    return rests_on.rsplit("/", 1)[-1]
-
-
 def to_line(label: str) -> str:
     """A line of the same sheet."""
     return "#" + anchor(label)
@@ -36,7 +31,13 @@ def to_sheet(number: str, label: str = "") -> str:
 
 def to_source(line_id: str) -> str:
     """The line of another sheet by its id."""
-    return to_sheet(line_id.split("/", 1)[0], label_of(line_id))
+    return to_sheet(*source_of(line_id))
+
+
+def source_of(line_id: str) -> tuple[str, str]:
+    """Sheet number and label in the id of a line, as "MB/demand/P[C-014]"."""
+    sheet, _, label = line_id.split("/", 2)
+    return sheet, label
 
 
 def datum_anchor(origin: Origin) -> str:

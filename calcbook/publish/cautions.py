@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable
 
-from calcbook.records.line import ConclusionLine, Line, TableLine
+from calcbook.records.line import Line, TableLine
 
 GENERAL = (
     "Results need review by a competent and, where required, licensed person.",
@@ -27,15 +27,7 @@ def numbered(table: str) -> str:
     return table if table.lower().startswith("table") else f"Table {table}"
 
 
-def of_sheet(lines: Iterable[Line]) -> tuple[str, ...]:
-    """The cautions of one sheet: those of its conclusion, and its tables that nobody has signed off."""
-    found: list[str] = []
-    tables: list[str] = []
-    for line in lines:
-        if isinstance(line, ConclusionLine):
-            found.extend(line.cautions)
-        if isinstance(line, TableLine) and line.citation.signed_off is None:
-            tables.append(table_name(line))
-    if tables:
-        found.append(f"Values {NOT_COMPARED}: {'; '.join(dict.fromkeys(tables))}.")
-    return tuple(dict.fromkeys(found))
+def of_tables(lines: Iterable[Line]) -> str:
+    """The caution on the tables of a sheet that nobody has signed off, "" where there is none."""
+    tables = [table_name(line) for line in lines if isinstance(line, TableLine) and line.citation.signed_off is None]
+    return f"Values {NOT_COMPARED}: {'; '.join(dict.fromkeys(tables))}." if tables else ""

@@ -139,11 +139,12 @@ class Summary:
     criteria: tuple[CriterionRow, ...]
     headrooms: tuple[HeadroomRow, ...]
     open_items: tuple[str, ...]
+    cautions: tuple[str, ...]
 
 
 @dataclass(frozen=True)
 class SheetView:
-    """One sheet; `cautions` are its own, the general ones stand in the footer of every page."""
+    """One sheet; `caution` names its tables not signed off, beside the general cautions in the footer of every page."""
 
     number: str
     title: str
@@ -151,5 +152,5 @@ class SheetView:
     version: str
     sections: tuple[Section, ...]
     summary: Summary | None
-    cautions: tuple[str, ...]
+    caution: str
     failure: Failure | None

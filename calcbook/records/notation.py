@@ -49,7 +49,7 @@ def names_of_parameter(parameter: str) -> tuple[Name, ...]:
 
 def out_of_range(entry: Name, quantity: Quantity) -> str:
     """What is wrong with a number outside the entry's range, in the entry's own unit; "" where it is inside."""
-    if _holds(entry.range, quantity.number):
+    if within(entry.range, quantity.number):
         return ""
     return f"{kind_in_words(entry.name)} is {quantity.number:g}; allowed is {range_in_words(entry.range)}"
 
@@ -64,7 +64,8 @@ def range_in_words(text: str) -> str:
     return f"{'from' if text[0] == '[' else 'above'} {low} {'to' if text[-1] == ']' else 'to below'} {high}"
 
 
-def _holds(text: str, number: float) -> bool:
+def within(text: str, number: float) -> bool:
+    """Whether a number is inside a range: ">0", ">=1", "(0,1]"; "" holds every number."""
     if not text:
         return True
     if text.startswith(">="):

@@ -2,13 +2,11 @@
 
 from __future__ import annotations
 
-import math
-
 from calcbook.records.quantity import Quantity
 from calcbook.records.units import UNITS
 
 MINUS = "\N{MINUS SIGN}"
-NARROW_SPACE = "\N{NARROW NO-BREAK SPACE}"
+_DIGITS = str.maketrans("⁰¹²³⁴⁵⁶⁷⁸⁹⁻", "0123456789-")
 _SUPERSCRIPTS = str.maketrans("0123456789-", "⁰¹²³⁴⁵⁶⁷⁸⁹⁻")
 
 
@@ -49,7 +47,9 @@ def with_unit(number: str, unit: str) -> str:
 
 
 def print_calculated(quantity: Quantity, figures: int | None = None) -> str:
-    """A calculated quantity as it stands on paper: "80.7 A"."""
+    """A calculated quantity as it stands on paper: "80.7 A"; a count is a whole number."""
+    if quantity.kind == "count" and quantity.number == round(quantity.number):
+        return print_given(quantity)
     return with_unit(print_number(quantity.number, figures), quantity.unit)
 
 
@@ -58,11 +58,25 @@ def print_given(quantity: Quantity) -> str:
     return with_unit(print_plain(quantity.number), quantity.unit)
 
 
-def tell_apart(left: Quantity, right: Quantity) -> tuple[str, str]:
-    """Two sides of an inequality, with as many figures as it takes for unequal numbers to look unequal."""
-    sides = (print_calculated(left), print_calculated(right))
-    figures = 4
-    while sides[0] == sides[1] and not math.isclose(left.number, right.number, rel_tol=1e-12) and figures <= 14:
+def tell_apart(left: Quantity, left_text: str, right: Quantity, right_text: str) -> tuple[str, str]:
+    """The two sides of an inequality as printed, with as many figures as it takes to show which is larger.
+
+    Both quantities have one unit; the texts are the sides as they stand elsewhere on the sheet.
+    """
+    sides = (left_text, right_text)
+    figures = 3
+    while not _in_order(sides, left.number - right.number) and figures < 15:
         figures += 1
         sides = (print_calculated(left, figures), print_calculated(right, figures))
     return sides
+
+
+def _in_order(sides: tuple[str, str], difference: float) -> bool:
+    left, right = (_read_back(side) for side in sides)
+    return (left > right) == (difference > 0) and (left < right) == (difference < 0)
+
+
+def _read_back(text: str) -> float:
+    number = text.split("\N{NO-BREAK SPACE}")[0].replace(MINUS, "-").rstrip("°")
+    mantissa, _, power = number.partition("×10")
+    return float(mantissa) * 10.0 ** int(power.translate(_DIGITS) or "0")

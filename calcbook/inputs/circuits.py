@@ -1,0 +1,134 @@
+"""circuits.csv: one circuit a row, checked on its own and against the basis and the boards, gaps filled as said."""
+
+from __future__ import annotations
+
+from collections.abc import Collection, Mapping
+from dataclasses import dataclass, field, replace
+
+from calcbook.inputs.conditions import report_conditions
+from calcbook.inputs.faults import FaultList
+from calcbook.inputs.fields import fields_of
+from calcbook.inputs.fill import fill_gaps, is_line_to_neutral
+from calcbook.inputs.notes import Notes
+from calcbook.inputs.refusals import report_refusals
+from calcbook.inputs.rows import Row, read_rows
+from calcbook.inputs.text import nearest_name, shown
+from calcbook.records.project import Circuit, Datum
+
+FILE = "circuits.csv"
+
+
+@dataclass(frozen=True)
+class Surroundings:
+    """What circuits stand in: the basis, the names of boards, sources, cases and couplers, and the notes.
+
+    `known` is False where inputs.toml could not be read: then nothing is checked against it.
+    """
+
+    basis: Mapping[str, Datum]
+    names: Mapping[str, Collection[str]]
+    notes: Notes
+    known: bool
+
+
+@dataclass
+class Circuits:
+    """The circuits of the file; `columns` by tag, None where a row has faults; `unused` columns that hold something."""
+
+    found: list[Circuit] = field(default_factory=list)
+    columns: dict[str, set[str] | None] = field(default_factory=dict)
+    unused: set[str] = field(default_factory=set)
+
+
+def read_circuits(text: str, decimal: str, around: Surroundings, faults: FaultList) -> Circuits:
+    """All circuits of a CSV text with a decimal mark; faults are reported, and their rows make no circuit."""
+    circuits, tags, references = Circuits(), _Tags(around), _References(around)
+    unused = {name for name, field in fields_of("circuits").items() if not field.used}
+    rows = 0
+    for row in read_rows(FILE, "circuits", text, decimal, faults):
+        rows += 1
+        tags.check(row)
+        references.check(row)
+        report_conditions(row)
+        report_refusals(row)
+        if row.lacks("ambient") and around.known and "ambient_air" not in around.basis:
+            row.fault("ambient", "is empty, and [basis] has no valid ambient_air")
+        circuits.unused |= unused & row.values.keys()
+        _take(row, around, circuits)
+    if not rows:
+        faults.add(FILE, "", "has no circuit")
+    references.check_circuits(circuits.columns)
+    return circuits
+
+
+def _take(row: Row, around: Surroundings, circuits: Circuits) -> None:
+    tag = row.text("tag")
+    if row.wrong or not around.known:
+        if tag:
+            circuits.columns[tag] = None
+        return
+    circuit = _circuit(row, around)
+    circuits.found.append(circuit)
+    circuits.columns[tag] = {"tag", "description", *circuit.data}
+
+
+def _circuit(row: Row, around: Surroundings) -> Circuit:
+    tag = row.text("tag")
+    data = {
+        name: Datum(value.text, value.quantity, around.notes.origin(FILE, tag, name))
+        for name, value in row.values.items()
+        if name not in {"tag", "description"}
+    }
+    rated = data.get("rated_voltage")
+    if rated and rated.quantity and is_line_to_neutral(data["phases"].text):
+        data["rated_voltage"] = replace(rated, quantity=replace(rated.quantity, kind="line_to_neutral_voltage"))
+    fill_gaps(tag, data, around.basis, around.notes)
+    return Circuit(tag, row.text("description"), data)
+
+
+class _Tags:
+    """Tags seen so far, ignoring case: circuits, boards and sources share them, as they number sheets."""
+
+    def __init__(self, around: Surroundings) -> None:
+        self._seen = {name.lower(): f"[{kind}.{name}]" for kind in ("boards", "sources") for name in around.names[kind]}
+
+    def check(self, row: Row) -> None:
+        tag = row.text("tag")
+        if not tag:
+            return
+        if tag.lower() in self._seen:
+            first = self._seen[tag.lower()]
+            row.fault("tag", f"{shown(tag)} is used twice, first in {first}; capitals make no difference")
+        else:
+            self._seen[tag.lower()] = row.place
+
+
+class _References:
+    """Names that cells of circuits hold: of boards and cases checked at once, of circuits when all are read."""
+
+    def __init__(self, around: Surroundings) -> None:
+        self._around = around
+        self._columns = {
+            name: field.choices[0]
+            for name, field in fields_of("circuits").items()
+            if field.holds.startswith("reference")
+        }
+        self._pending: list[tuple[Row, str]] = []
+
+    def check(self, row: Row) -> None:
+        for column in self._columns.keys() & row.values.keys():
+            kind = self._columns[column]
+            if kind == "circuits":
+                self._pending.append((row, column))
+            elif self._around.known:
+                self._check(row, column, self._around.names[kind])
+
+    def check_circuits(self, tags: Collection[str]) -> None:
+        for row, column in self._pending:
+            self._check(row, column, tags)
+
+    def _check(self, row: Row, column: str, known: Collection[str]) -> None:
+        for name in row.text(column).split():
+            if name not in known:
+                kind = self._columns[column]
+                row.fault(column, f"{shown(name)} is not one of the {kind}; {nearest_name(name, known)}")

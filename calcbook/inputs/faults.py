@@ -1,0 +1,27 @@
+"""The list that gathers faults while the inputs are read."""
+
+from __future__ import annotations
+
+from calcbook.errors import Fault, InputFaults
+
+MOST_FAULTS = 1000
+
+
+class FaultList:
+    """Faults of one reading of the inputs, in the order in which they were found."""
+
+    def __init__(self) -> None:
+        """Begin with no fault."""
+        self._faults: list[Fault] = []
+
+    def add(self, file: str, place: str, message: str) -> None:
+        """Note one fault; raises InputFaults at once when there are so many that reading on helps nobody."""
+        self._faults.append(Fault(file, place, message))
+        if len(self._faults) == MOST_FAULTS:
+            self._faults.append(Fault("", "", f"more than {MOST_FAULTS} faults; the rest was not read"))
+            self.raise_if_any()
+
+    def raise_if_any(self) -> None:
+        """Raise all faults in one InputFaults, each once."""
+        if self._faults:
+            raise InputFaults(tuple(dict.fromkeys(self._faults)))

@@ -1,0 +1,43 @@
+"""The text of an input file: read whole, checked for its encoding, without its byte order mark."""
+
+from __future__ import annotations
+
+import codecs
+from pathlib import Path
+
+from calcbook.inputs.faults import FaultList
+
+LARGEST_FILE = 64 * 2**20
+
+
+def read_source(folder: Path, name: str, faults: FaultList, *, needed: bool) -> str | None:
+    """The text of `folder/name`; None, with a fault where that is one, when there is none to be had."""
+    path = folder / name
+    if not needed and not path.exists():
+        return None
+    try:
+        if path.stat().st_size > LARGEST_FILE:
+            faults.add(name, "", f"has {path.stat().st_size} bytes; allowed are {LARGEST_FILE}")
+            return None
+        data = path.read_bytes()
+    except FileNotFoundError:
+        faults.add(name, "", f"is missing; a project folder holds inputs.toml and circuits.csv (looked in {folder})")
+    except OSError as error:
+        faults.add(name, "", f"cannot be read ({error.strerror})")
+    else:
+        return _decoded(name, data, faults)
+    return None
+
+
+def _decoded(name: str, data: bytes, faults: FaultList) -> str | None:
+    try:
+        return data.removeprefix(codecs.BOM_UTF8).decode("utf-8")
+    except UnicodeDecodeError as error:
+        place = error.start + (len(codecs.BOM_UTF8) if data.startswith(codecs.BOM_UTF8) else 0)
+        row = data.count(b"\n", 0, place) + 1
+        faults.add(
+            name,
+            f"row {row}",
+            f"is not UTF-8: byte {place + 1} of the file is 0x{data[place]:02X}; save the file with the encoding UTF-8",
+        )
+        return None

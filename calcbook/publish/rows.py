@@ -1,0 +1,270 @@
+"""From a line's record to the row that is printed: every text on paper is chosen here, once for HTML and PDF."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+
+from calcbook.publish import anchors
+from calcbook.publish.cautions import NOT_COMPARED, numbered
+from calcbook.publish.view import DataRow, Equation, Formula, Paragraph, Span, WorkRow
+from calcbook.records.display import texts_of
+from calcbook.records.line import (
+    Argument,
+    BroughtForwardLine,
+    ChoiceLine,
+    Citation,
+    DatumLine,
+    DerivationLine,
+    InequalityLine,
+    Line,
+    RuleLine,
+    StepLine,
+    TableLine,
+    Valued,
+)
+from calcbook.records.project import Adopted, Origin
+from calcbook.records.written.tree import parse
+
+_SIGNS = {"<=": "≤", ">=": "≥"}
+
+
+@dataclass(frozen=True)
+class Setting:
+    """What rows of a sheet need to know beyond their own line.
+
+    `in_package`: the inputs page, the tables page and other sheets stand beside, so that links to them resolve.
+    `derivations`: formula name -> sheet and line where it is derived. `governing`: label of the governing criterion.
+    """
+
+    in_package: bool = False
+    derivations: Mapping[str, tuple[str, str]] = field(default_factory=dict)
+    governing: str = ""
+
+    def outward(self, address: str) -> str:
+        """An address on another page, or none where there is no other page."""
+        return address if self.in_package else ""
+
+
+def sentence(*texts: str) -> Paragraph:
+    """A paragraph of plain text; empty texts are left out."""
+    return (Span(", ".join(text for text in texts if text)),)
+
+
+def data_row(line: DatumLine | ChoiceLine, setting: Setting) -> DataRow:
+    """A datum or a choice in the compact table."""
+    origin = line.origin
+    return DataRow(
+        anchor=anchors.anchor(line.label),
+        label=line.label if isinstance(line, DatumLine) else "",
+        description=line.description,
+        value=Span(line.text, setting.outward(anchors.to_datum(origin))),
+        place=place(origin),
+        document=document(origin),
+        status=origin.status,
+        remark=origin.remark,
+    )
+
+
+def place(origin: Origin) -> str:
+    """Where a datum stands in the inputs: file, tag, column."""
+    return ", ".join(part for part in (origin.file, origin.tag, origin.column) if part)
+
+
+def document(origin: Origin) -> str:
+    """The source document of a datum with its revision and page."""
+    revision = f"rev. {origin.revision}" if origin.revision else ""
+    page = f"p. {origin.page}" if origin.page else ""
+    return ", ".join(part for part in (origin.document, revision, page) if part)
+
+
+def work_row(line: Line, setting: Setting) -> WorkRow:
+    """A line of working as it is printed."""
+    match line:
+        case TableLine():
+            return _table_value(line, setting)
+        case BroughtForwardLine():
+            return _brought_forward(line, setting)
+        case StepLine():
+            return _step(line, setting)
+        case InequalityLine():
+            return _inequality(line, setting)
+        case RuleLine():
+            return _rule(line, setting)
+        case DerivationLine():
+            return _derivation(line)
+    raise TypeError(f"{type(line).__name__} is not a line of working")
+
+
+def _value(line: Valued, text: str, link: str = "", before: str = "") -> Paragraph:
+    start = (Span(before),) if before else ()
+    return (*start, Span(line.label, symbol=True), Span(" = "), Span(text, link))
+
+
+def _table_value(line: TableLine, setting: Setting) -> WorkRow:
+    citation = line.citation
+    standard = f"{citation.standard}:{citation.edition}" if citation.edition else citation.standard
+    notes = [sentence(f"row {citation.row}", f"column {citation.column}")] if citation.row or citation.column else []
+    if line.arguments:
+        notes.append(_arguments(line.arguments))
+    if citation.remark:
+        notes.append(sentence(citation.remark))
+    notes.append(sentence(compared(citation)))
+    return WorkRow(
+        anchor=anchors.anchor(line.label),
+        reference=(sentence(standard), sentence(numbered(citation.table))),
+        description=line.description,
+        equations=(),
+        notes=tuple(notes),
+        result=(_value(line, line.text, setting.outward(anchors.to_cell(line))),),
+    )
+
+
+def compared(citation: Citation) -> str:
+    """Whether the table has been compared with a licensed copy, and by whom."""
+    signed = citation.signed_off
+    if signed is None:
+        return f"obtained: {citation.status}; {NOT_COMPARED}" if citation.status else NOT_COMPARED
+    return f"compared with {signed.document} by {signed.by}, {signed.date}"
+
+
+def _arguments(arguments: tuple[Argument, ...]) -> Paragraph:
+    spans: list[Span] = [Span("for ")]
+    for index, argument in enumerate(arguments):
+        spans.append(Span(f"{', ' if index else ''}{argument.name.replace('_', ' ')} "))
+        spans.append(Span(argument.text, anchors.to_line(argument.rests_on) if argument.rests_on else ""))
+    return tuple(spans)
+
+
+def _brought_forward(line: BroughtForwardLine, setting: Setting) -> WorkRow:
+    sheet, label = anchors.source_of(line.source)
+    source = (Span(f"brought forward from {sheet}, line "), Span(label, symbol=True))
+    return WorkRow(
+        anchor=anchors.anchor(line.label),
+        reference=((Span(f"sheet {sheet}", setting.outward(anchors.to_sheet(sheet))),),),
+        description=line.description,
+        equations=(),
+        notes=(source,),
+        result=(_value(line, line.text, setting.outward(anchors.to_source(line.source))),),
+    )
+
+
+def _step(line: StepLine, setting: Setting) -> WorkRow:
+    node = parse(line.written)
+    links = {
+        binding.symbol: anchors.to_line(binding.rests_on[0]) for binding in line.bindings if len(binding.rests_on) == 1
+    }
+    equations = [Equation(Span(line.label, symbol=True), "=", Formula(node))]
+    if line.bindings:
+        equations.append(Equation(None, "=", Formula(node, texts_of(line), links)))
+    notes = [_terms(binding.rests_on, binding.texts) for binding in line.bindings if len(binding.rests_on) > 1]
+    if line.remark:
+        notes.append(sentence(line.remark))
+    result = [_value(line, line.calculated_text)]
+    if line.adopted:
+        notes.append(_adopted(line, line.adopted))
+        result = [_value(line, line.calculated_text, before="calculated "), _value(line, line.text, before="adopted ")]
+    return WorkRow(
+        anchor=anchors.anchor(line.label),
+        reference=_reference_of_step(line, setting),
+        description=line.description,
+        equations=tuple(equations),
+        notes=tuple(notes),
+        result=tuple(result),
+    )
+
+
+def _reference_of_step(line: StepLine, setting: Setting) -> tuple[Paragraph, ...]:
+    reference = [sentence(line.reference)] if line.reference else []
+    if line.formula in setting.derivations:
+        sheet, label = setting.derivations[line.formula]
+        reference.append((Span("derived: "), Span(sheet, setting.outward(anchors.to_sheet(sheet, label)))))
+    return tuple(reference)
+
+
+def _terms(rests_on: tuple[str, ...], texts: tuple[str, ...]) -> Paragraph:
+    """The keyed lines of a sum, each with its value: the sum itself may shorten them."""
+    spans: list[Span] = [Span("terms: ")]
+    for index, (label, text) in enumerate(zip(rests_on, texts, strict=True)):
+        spans += [Span(", ")] if index else []
+        spans += [Span(label, symbol=True), Span(" = "), Span(text, anchors.to_line(label))]
+    return tuple(spans)
+
+
+def _adopted(line: StepLine, adopted: Adopted) -> Paragraph:
+    reason = adopted.reason.rstrip(". ")
+    return (
+        Span("adopted ", strong=True),
+        Span(line.label, symbol=True),
+        Span(f" = {line.text} in place of {line.calculated_text}: {reason} ({adopted.by}, {adopted.date})"),
+    )
+
+
+def sides(line: InequalityLine) -> tuple[Span, Span, Span]:
+    """The two sides as printed, with the sign between them."""
+    return (
+        Span(line.left_text, anchors.to_line(line.left)),
+        Span(f" {_SIGNS[line.operator]} "),
+        Span(line.right_text, anchors.to_line(line.right)),
+    )
+
+
+def in_words(line: InequalityLine | RuleLine) -> str:
+    """What a criterion is called on paper."""
+    return line.description or line.label
+
+
+def _inequality(line: InequalityLine, setting: Setting) -> WorkRow:
+    sign = _SIGNS[line.operator]
+    left, _, right = sides(line)
+    equations = (
+        Equation(Span(line.left, symbol=True), sign, Span(line.right, symbol=True)),
+        Equation(left, sign, right),
+    )
+    result = [_verdict(line.verdict), sentence(f"utilisation {line.utilisation_text}")]
+    if line.label == setting.governing:
+        result.append(sentence("governs"))
+    return _criterion(line, equations, (), tuple(result))
+
+
+def _rule(line: RuleLine, setting: Setting) -> WorkRow:
+    notes = (
+        sentence(line.requirement),
+        (Span("found: "), found(line)),
+        sentence(f"allowed: {', '.join(line.allowed)}"),
+    )
+    result = [_verdict(line.verdict)]
+    if line.label == setting.governing:
+        result.append(sentence("governs"))
+    return _criterion(line, (), notes, tuple(result))
+
+
+def found(line: RuleLine) -> Span:
+    """The word that a rule found, which links to where it stands."""
+    return Span(line.found or "nothing stated", anchors.to_line(line.rests_on) if line.rests_on else "")
+
+
+def _verdict(verdict: str) -> Paragraph:
+    return (Span(verdict, strong=True),)
+
+
+def _criterion(
+    line: InequalityLine | RuleLine,
+    equations: tuple[Equation, ...],
+    notes: tuple[Paragraph, ...],
+    result: tuple[Paragraph, ...],
+) -> WorkRow:
+    reference = (sentence(line.reference),) if line.reference else ()
+    return WorkRow(anchors.anchor(line.label), reference, in_words(line), equations, notes, result)
+
+
+def _derivation(line: DerivationLine) -> WorkRow:
+    notes = [sentence(text) for text in (line.reason, f"proof: {line.proof}" if line.proof else "") if text]
+    return WorkRow(
+        anchor=anchors.anchor(line.label),
+        reference=(sentence(line.formula),) if line.formula else (),
+        description=line.description,
+        equations=(Equation(Formula(parse(line.left)), "=", Formula(parse(line.right))),),
+        notes=tuple(notes),
+        result=((Span(line.standing),),),
+    )

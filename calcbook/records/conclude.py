@@ -1,0 +1,82 @@
+"""The end of a sheet: which criterion governs, how far the next one is, what is still open."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+from typing import Any
+
+from calcbook.records.headroom import headroom
+from calcbook.records.line import (
+    ChoiceLine,
+    ConclusionLine,
+    CriterionLine,
+    DatumLine,
+    InequalityLine,
+    Line,
+    RuleLine,
+    StepLine,
+    TableLine,
+    Verdict,
+)
+from calcbook.records.recompute import LookUp
+
+
+def conclusion(identity: Mapping[str, Any], lines: Sequence[Line], look_up: LookUp) -> ConclusionLine:
+    """The conclusion of the lines so far.
+
+    The governing criterion is the one with the highest utilisation; a rule that is not met governs before all. The
+    headroom of the governing inequality and of the next is worked out.
+    """
+    criteria = [line for line in lines if isinstance(line, InequalityLine | RuleLine)]
+    order = sorted(criteria, key=_severity, reverse=True)
+    inequalities = [line for line in order if isinstance(line, InequalityLine)]
+    rooms = (headroom(lines, criterion, look_up) for criterion in inequalities[:2])
+    return ConclusionLine(
+        **identity,
+        verdict=_verdict(criteria),
+        governing=order[0].label if order else "",
+        order=tuple(line.label for line in order),
+        headrooms=tuple(room for room in rooms if room is not None),
+        open_items=tuple(_open_items(lines)),
+        cautions=tuple(_cautions(lines)),
+    )
+
+
+def _severity(criterion: CriterionLine) -> float:
+    if isinstance(criterion, InequalityLine):
+        return criterion.utilisation
+    return {"not met": float("inf"), "not shown": float("inf"), "met": -1.0}[criterion.verdict]
+
+
+def _verdict(criteria: Sequence[CriterionLine]) -> Verdict:
+    verdicts = {criterion.verdict for criterion in criteria}
+    return "not met" if "not met" in verdicts else "not shown" if "not shown" in verdicts else "met"
+
+
+def _open_items(lines: Sequence[Line]) -> list[str]:
+    """Data that are not confirmed, in one sentence each."""
+    items = []
+    for line in lines:
+        if isinstance(line, DatumLine | ChoiceLine) and line.origin.status != "confirmed":
+            place = ", ".join(part for part in (line.origin.file, line.origin.tag, line.origin.column) if part)
+            remark = f" ({line.origin.remark})" if line.origin.remark else ""
+            items.append(f"{line.description} {line.text or 'not stated'}: {line.origin.status}, {place}{remark}")
+    return items
+
+
+def _cautions(lines: Sequence[Line]) -> list[str]:
+    """Tables not compared with a licensed copy, and adopted values, once each."""
+    cautions = []
+    for line in lines:
+        if isinstance(line, TableLine) and line.citation.signed_off is None:
+            source = line.citation
+            cautions.append(
+                f"{source.standard}:{source.edition}, {source.table}: not yet compared with a licensed copy"
+            )
+        if isinstance(line, StepLine) and line.adopted:
+            adopted = line.adopted
+            cautions.append(
+                f"{line.description}: {line.text} adopted in place of {line.calculated_text} "
+                f"({adopted.reason}; {adopted.by}, {adopted.date})"
+            )
+    return list(dict.fromkeys(cautions))

@@ -1,0 +1,1 @@
+"""Run: assembles workbooks from templates and executes them."""
