@@ -176,6 +176,9 @@ class WorkspaceFault(CalcbookError):
         return self.message
 
 
+_MOST_CHOICES = 20
+
+
 def nearest(name: str, valid: Iterable[str]) -> str:
     """A question that offers the nearest valid name, else the list of valid names.
 
@@ -186,4 +189,6 @@ def nearest(name: str, valid: Iterable[str]) -> str:
     if close:
         found = next(choice for choice in choices if choice.lower() == close[0])
         return f'did you mean "{found}"?'
+    if len(choices) > _MOST_CHOICES:
+        return "nearest: " + ", ".join(difflib.get_close_matches(name, choices, n=5, cutoff=0.0))
     return "allowed: " + ", ".join(choices)

@@ -1,9 +1,9 @@
 """What a template imports: a sheet on which every line is recorded and displayed as it is made.
 
-    sheet = open_sheet("three-phase-power", globals())
-    P_2 = sheet.datum("shaft_power")
-    I_L = sheet.step("I_L", three_phase.CURRENT_OF_MOTOR, P_2=P_2, U_r=U_r, eta=eta, cos_phi=cos_phi)
-    sheet.criterion("design current", I_B <= I_r, cite="IEC 60364-4-43, 433.1 (1)", headroom=["shaft_power"])
+sheet = open_sheet("three-phase-power", globals())
+P_2 = sheet.datum("shaft_power")
+I_L = sheet.step("I_L", three_phase.CURRENT_OF_MOTOR, P_2=P_2, U_r=U_r, eta=eta, cos_phi=cos_phi)
+sheet.criterion("design current", I_B <= I_r, cite="IEC 60364-4-43, 433.1 (1)", headroom=["shaft_power"])
 """
 
 from __future__ import annotations
@@ -51,7 +51,11 @@ def open_sheet(template: str, parameters: Mapping[str, Any]) -> Sheet:
     Parameters: `template` its name; `parameters` the notebook's `globals()`, of which only the template's parameters
     are read: texts by parameter name, and `given` (origins, adopted values, sign-offs, number and title).
     """
-    return Sheet(template, {name: value for name, value in parameters.items() if isinstance(value, str)}, parameters.get("given") or {})
+    return Sheet(
+        template,
+        {name: value for name, value in parameters.items() if isinstance(value, str)},
+        parameters.get("given") or {},
+    )
 
 
 class Sheet:
@@ -199,7 +203,9 @@ class Sheet:
                 text=print_given(final) if adopted else print_calculated(final),
                 formula=formula.name,
                 written=write(tree),
-                bindings=tuple(Binding(symbol=label, rests_on=(label,), texts=(values[label].text,)) for label in labels),
+                bindings=tuple(
+                    Binding(symbol=label, rests_on=(label,), texts=(values[label].text,)) for label in labels
+                ),
                 reference=formula.reference,
                 second=second,
                 calculated=value,
@@ -209,7 +215,9 @@ class Sheet:
             )
         )
 
-    def criterion(self, name: str, comparison: Comparison, /, *, cite: str, description: str = "", headroom: Sequence[str] = ()) -> None:
+    def criterion(
+        self, name: str, comparison: Comparison, /, *, cite: str, description: str = "", headroom: Sequence[str] = ()
+    ) -> None:
         """What must hold, as an inequality.
 
         `headroom` names parameters; the greatest change is worked out of the first of them that is a datum here.
@@ -278,7 +286,9 @@ class Sheet:
         unused = [label for label in self.adopted if label not in {line.label for line in self.lines}]
         if unused:
             steps = [line.label for line in self.lines if isinstance(line, StepLine)]
-            raise self._fault(unused[0], f"an adopted value, but this sheet has no such step; {nearest(unused[0], steps)}")
+            raise self._fault(
+                unused[0], f"an adopted value, but this sheet has no such step; {nearest(unused[0], steps)}"
+            )
         self._keep(conclusion(self._identity("conclusion"), self.lines, look_up))
 
     def _keep(self, line: Line) -> None:

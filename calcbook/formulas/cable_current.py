@@ -19,7 +19,7 @@ GROUPED_CIRCUITS = Formula(
 )
 AMBIENT_FACTOR = Formula(
     name="ambient_factor",
-    purpose="Factor on the tabulated capacity for an ambient temperature other than the table's, from the heat balance.",
+    purpose="Factor on the tabulated capacity for another ambient temperature, from the heat balance.",
     result="C_a_f",
     written="sqrt((theta_max - theta_a)/(theta_max - theta_ref))",
     valid="conductor at its greatest temperature; heat given off in proportion to its rise; resistance at theta_max",
@@ -33,7 +33,7 @@ AMBIENT_FACTOR_DIFFERENCE = Formula(
     purpose="How far the tabulated ambient factor lies from the heat balance; the tabulated one is used.",
     result="d_C",
     written="(C_a - C_a_f)/C_a_f",
-    valid="information; at the temperature of the table's row that was used",
+    valid="information; between two rows of the table the step to the warmer row shows in it",
     reference="comparison",
     citation="definition of a relative difference",
     example=Example({"C_a": "0.87", "C_a_f": "0.866"}, "0.462 %"),

@@ -45,7 +45,7 @@ CABLE_CURRENT = Derivation(
               is_premise=True),
         Stage("table", "theta_max - theta_ref", "R*R_th*I_t^2", "the tabulated capacity, at the table's own ambient",
               is_premise=True),
-        Stage("other", "theta_max - theta_a", "R*R_th*(C*I_t)^2", "the same cable at another ambient carries C times it",
+        Stage("other", "theta_max - theta_a", "R*R_th*(C*I_t)^2", "the cable at another ambient carries C times that",
               is_premise=True),
         Stage("C_a_f", "C", "sqrt((theta_max - theta_a)/(theta_max - theta_ref))",
               "the last line divided by the one before, solved for C", derived=_ambient_factor,

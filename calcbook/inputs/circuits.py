@@ -30,6 +30,11 @@ class Surroundings:
     notes: Notes
     known: bool
 
+    @property
+    def complete(self) -> bool:
+        """Whether circuits can be filled from the basis."""
+        return self.known and {"nominal_voltage", "line_to_earth_voltage"} <= self.basis.keys()
+
 
 @dataclass
 class Circuits:
@@ -63,7 +68,7 @@ def read_circuits(text: str, decimal: str, around: Surroundings, faults: FaultLi
 
 def _take(row: Row, around: Surroundings, circuits: Circuits) -> None:
     tag = row.text("tag")
-    if row.wrong or not around.known:
+    if row.wrong or not around.complete:
         if tag:
             circuits.columns[tag] = None
         return
@@ -109,15 +114,15 @@ class _References:
     def __init__(self, around: Surroundings) -> None:
         self._around = around
         self._columns = {
-            name: field.choices[0]
-            for name, field in fields_of("circuits").items()
-            if field.holds.startswith("reference")
+            name: field for name, field in fields_of("circuits").items() if field.holds.startswith("reference")
         }
         self._pending: list[tuple[Row, str]] = []
 
     def check(self, row: Row) -> None:
-        for column in self._columns.keys() & row.values.keys():
-            kind = self._columns[column]
+        for column, reference in self._columns.items():
+            kind = reference.choices[0]
+            if column not in row.values:
+                continue
             if kind == "circuits":
                 self._pending.append((row, column))
             elif self._around.known:
@@ -128,7 +133,7 @@ class _References:
             self._check(row, column, tags)
 
     def _check(self, row: Row, column: str, known: Collection[str]) -> None:
-        for name in row.text(column).split():
+        field, text = self._columns[column], row.text(column)
+        for name in text.split() if field.holds == "references" else [text]:
             if name not in known:
-                kind = self._columns[column]
-                row.fault(column, f"{shown(name)} is not one of the {kind}; {nearest_name(name, known)}")
+                row.fault(column, f"{shown(name)} is not one of the {field.choices[0]}; {nearest_name(name, known)}")

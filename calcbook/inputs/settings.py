@@ -65,6 +65,8 @@ def read_settings(text: str, faults: FaultList) -> Settings | None:
     for kind in TAGGED:
         for name, table in _tables_of(kind, document.get(kind, {}), faults):
             settings.values[f"{kind}.{name}"] = _read_table(kind, f"{kind}.{name}", table, faults)
+    if not document.get("boards"):
+        faults.add(FILE, "", "no board; a project has at least one, such as [boards.MB]")
     for name, table in _tables_of("signed_off", document.get("signed_off", {}), faults):
         values = _read_table("signed_off", f'signed_off."{name}"', table, faults)
         if len(values) == len(fields_of("signed_off")):

@@ -160,10 +160,11 @@ def _step(line: StepLine, setting: Setting) -> WorkRow:
     notes = [_terms(binding.rests_on, binding.texts) for binding in line.bindings if len(binding.rests_on) > 1]
     if line.remark:
         notes.append(sentence(line.remark))
-    result = [_value(line, line.calculated_text)]
+    own = anchors.to_line(line.label)
+    result = [_value(line, line.calculated_text, own)]
     if line.adopted:
         notes.append(_adopted(line, line.adopted))
-        result = [_value(line, line.calculated_text, before="calculated "), _value(line, line.text, before="adopted ")]
+        result = [_value(line, line.calculated_text, own, "calculated "), _value(line, line.text, own, "adopted ")]
     return WorkRow(
         anchor=anchors.anchor(line.label),
         reference=_reference_of_step(line, setting),
@@ -214,6 +215,11 @@ def in_words(line: InequalityLine | RuleLine) -> str:
     return line.description or line.label
 
 
+def utilisation(line: InequalityLine) -> Span:
+    """The utilisation of a criterion, which links to the criterion."""
+    return Span(line.utilisation_text, anchors.to_line(line.label))
+
+
 def _inequality(line: InequalityLine, setting: Setting) -> WorkRow:
     sign = _SIGNS[line.operator]
     left, _, right = sides(line)
@@ -221,7 +227,7 @@ def _inequality(line: InequalityLine, setting: Setting) -> WorkRow:
         Equation(Span(line.left, symbol=True), sign, Span(line.right, symbol=True)),
         Equation(left, sign, right),
     )
-    result = [_verdict(line.verdict), sentence(f"utilisation {line.utilisation_text}")]
+    result = [_verdict(line.verdict), (Span("utilisation "), utilisation(line))]
     if line.label == setting.governing:
         result.append(sentence("governs"))
     return _criterion(line, equations, (), tuple(result))

@@ -7,8 +7,6 @@ from dataclasses import replace
 from datetime import date
 from functools import cache
 from importlib.resources import files
-from itertools import groupby
-from typing import Any
 
 import typst
 
@@ -17,11 +15,8 @@ from calcbook.publish import cautions
 from calcbook.publish.typst_source import Literal, Mathematics, literal
 from calcbook.publish.view import (
     DataRow,
-    DataTable,
     Equation,
     Formula,
-    Heading,
-    Item,
     Paragraph,
     Section,
     SheetView,
@@ -29,7 +24,6 @@ from calcbook.publish.view import (
     Summary,
     Text,
     WorkRow,
-    WorkTable,
 )
 from calcbook.records.written import typst as print_typst
 
@@ -44,14 +38,14 @@ def sheet_pdf(view: SheetView) -> bytes:
     """
     if view.failure is not None:
         raise SheetFault(view.number, "", "", f"{cautions.NOT_FOR_ISSUE}: {view.failure.message}")
-    pdf: bytes = _compiler().compile(
-        input=typst_source(view).encode(), format="pdf", pdf_standards="a-3b", pdf_tags=False
-    )
+    source = typst_source(view).encode()
+    pdf = _compiler().compile(input=source, format="pdf", pdf_standards="a-3b", pdf_tags=False)
+    assert isinstance(pdf, bytes)  # noqa: S101 - without an output path the compiler hands back one file
     return pdf
 
 
 @cache
-def _compiler() -> Any:  # typst is compiled code without types of its own here
+def _compiler() -> typst.Compiler:
     fonts = typst.Fonts(include_system_fonts=False, include_embedded_fonts=True)
     return typst.Compiler(font_paths=fonts, ignore_system_fonts=True)
 
@@ -97,14 +91,14 @@ def _day(text: str) -> date:
 def _summary(summary: Summary) -> Literal:
     return {
         "verdict": summary.verdict,
-        "governing": summary.governing,
+        "governing": _paragraph(summary.governing),
         "criteria": [
             {
                 "description": row.description.text,
-                "sides": "".join(span.text for span in row.sides),
-                "utilisation": row.utilisation,
+                "sides": _paragraph(row.sides),
+                "utilisation": row.utilisation.text,
                 "verdict": row.verdict,
-                "governs": "governs" if row.governs else "does not govern",
+                "governs": row.governs,
             }
             for row in summary.criteria
         ],
@@ -113,8 +107,8 @@ def _summary(summary: Summary) -> Literal:
                 "criterion": row.criterion.text,
                 "datum": row.datum.text,
                 "symbol": _symbol(row.symbol),
-                "present": row.present,
-                "limit": row.limit,
+                "present": row.present.text,
+                "limit": row.limit.text,
                 "remark": row.remark,
             }
             for row in summary.headrooms
@@ -125,22 +119,16 @@ def _summary(summary: Summary) -> Literal:
 
 
 def _section(section: Section) -> Literal:
-    parts: list[Literal] = []
-    for is_working, group in groupby(section.items, lambda item: not isinstance(item, DataTable)):
-        items = list(group)
-        if is_working:
-            parts.extend(_work_parts(items))
-        else:
-            parts.extend(
-                {"data": [_data_row(row) for row in item.rows]} for item in items if isinstance(item, DataTable)
-            )
-    return {"title": section.title, "parts": parts}
+    return {
+        "title": section.title,
+        "opening": [_text(text) for text in section.opening],
+        "data": [_data_row(row) for row in section.data],
+        "work": [_text(row) if isinstance(row, Text) else _work_row(row) for row in section.work],
+    }
 
 
-def _work_parts(items: list[Item]) -> list[Literal]:
-    """Text among lines of working stands in the working column; text on its own runs over the whole width."""
-    rows = [row for item in items for row in _work_rows(item)]
-    return [{"work": rows}] if any(isinstance(item, WorkTable) for item in items) else [{"words": rows}]
+def _text(text: Text) -> dict[str, Literal]:
+    return {"text": _paragraph(text.spans), "heading": text.heading}
 
 
 def _data_row(row: DataRow) -> Literal:
@@ -153,17 +141,6 @@ def _data_row(row: DataRow) -> Literal:
         "status": row.status,
         "remark": row.remark,
     }
-
-
-def _work_rows(item: Item) -> list[dict[str, Literal]]:
-    match item:
-        case Text(spans):
-            return [{"text": _paragraph(spans)}]
-        case Heading(title):
-            return [{"heading": title}]
-        case DataTable():
-            return []
-    return [_work_row(row) for row in item.rows]
 
 
 def _work_row(row: WorkRow) -> dict[str, Literal]:

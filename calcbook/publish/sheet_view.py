@@ -5,24 +5,12 @@ from __future__ import annotations
 import re
 from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass, field
-from itertools import groupby, takewhile
+from itertools import takewhile
 from typing import Any
 
 from calcbook.publish import anchors, cautions
-from calcbook.publish.rows import Setting, data_row, found, in_words, sides, work_row
-from calcbook.publish.view import (
-    CriterionRow,
-    DataTable,
-    Heading,
-    HeadroomRow,
-    Item,
-    Section,
-    SheetView,
-    Span,
-    Summary,
-    Text,
-    WorkTable,
-)
+from calcbook.publish.rows import Setting, data_row, found, in_words, sides, utilisation, work_row
+from calcbook.publish.view import CriterionRow, HeadroomRow, Paragraph, Section, SheetView, Span, Summary, Text
 from calcbook.records.line import (
     ChoiceLine,
     ConclusionLine,
@@ -92,16 +80,17 @@ def _text(source: str | list[str]) -> str:
 
 
 def _sections(cells: Sequence[Mapping[str, Any]], setting: Setting) -> Iterator[Section]:
-    title, parts = "", []
+    title = ""
+    parts: list[Text | Line] = []
     for part in _parts(cells):
         if isinstance(part, _Title):
             if parts:
-                yield Section(title, _items(parts, setting))
+                yield _section(title, parts, setting)
             title, parts = part.text, []
         else:
             parts.append(part)
     if parts:
-        yield Section(title, _items(parts, setting))
+        yield _section(title, parts, setting)
 
 
 @dataclass(frozen=True)
@@ -109,7 +98,7 @@ class _Title:
     text: str
 
 
-def _parts(cells: Sequence[Mapping[str, Any]]) -> Iterator[_Title | Heading | Text | Line]:
+def _parts(cells: Sequence[Mapping[str, Any]]) -> Iterator[_Title | Text | Line]:
     for cell in cells:
         if cell["cell_type"] == "markdown":
             yield from _markdown(_text(cell["source"]))
@@ -117,7 +106,7 @@ def _parts(cells: Sequence[Mapping[str, Any]]) -> Iterator[_Title | Heading | Te
             yield from (line for line in lines_of_outputs([cell]) if not isinstance(line, ConclusionLine))
 
 
-def _markdown(source: str) -> Iterator[_Title | Heading | Text]:
+def _markdown(source: str) -> Iterator[_Title | Text]:
     paragraph: list[str] = []
     for line in [*source.splitlines(), ""]:
         heading = re.fullmatch(r"(#+)\s+(.*)", line)
@@ -127,9 +116,10 @@ def _markdown(source: str) -> Iterator[_Title | Heading | Text]:
         if paragraph:
             yield Text(tuple(_spans(" ".join(paragraph))))
             paragraph = []
-        if heading:
-            title = heading[2].strip()
-            yield _Title(title) if len(heading[1]) == 1 else Heading(title)
+        if heading and len(heading[1]) == 1:
+            yield _Title(heading[2].strip())
+        elif heading:
+            yield Text(tuple(_spans(heading[2].strip())), heading=True)
 
 
 def _spans(text: str) -> Iterator[Span]:
@@ -138,22 +128,19 @@ def _spans(text: str) -> Iterator[Span]:
             yield Span(part, symbol=index % 2 == 1 and part.partition("[")[0] in notation())
 
 
-def _items(parts: Sequence[Heading | Text | Line], setting: Setting) -> tuple[Item, ...]:
-    """The parts of a section: opening text, then its data in one table, then text and working as they come."""
-    opening = list(takewhile(lambda part: isinstance(part, Text), parts))
-    data = [data_row(part, setting) for part in parts if isinstance(part, DatumLine | ChoiceLine)]
-    rest = [part for part in parts[len(opening) :] if not isinstance(part, DatumLine | ChoiceLine)]
-    items: list[Item] = [part for part in opening if isinstance(part, Text)]
-    if data:
-        items.append(DataTable(tuple(data)))
-    for is_text, group in groupby(rest, lambda part: isinstance(part, Heading | Text)):
-        if is_text:
-            items.extend(part for part in group if isinstance(part, Heading | Text))
-        else:
-            items.append(
-                WorkTable(tuple(work_row(part, setting) for part in group if not isinstance(part, Heading | Text)))
-            )
-    return tuple(items)
+def _section(title: str, parts: Sequence[Text | Line], setting: Setting) -> Section:
+    opening = tuple(takewhile(lambda part: isinstance(part, Text) and not part.heading, parts))
+    rest = parts[len(opening) :]
+    return Section(
+        title,
+        opening=tuple(part for part in opening if isinstance(part, Text)),
+        data=tuple(data_row(part, setting) for part in rest if isinstance(part, DatumLine | ChoiceLine)),
+        work=tuple(
+            part if isinstance(part, Text) else work_row(part, setting)
+            for part in rest
+            if not isinstance(part, DatumLine | ChoiceLine)
+        ),
+    )
 
 
 def _summary(conclusion: ConclusionLine, lines: Sequence[Line]) -> Summary:
@@ -162,9 +149,9 @@ def _summary(conclusion: ConclusionLine, lines: Sequence[Line]) -> Summary:
     governing = by_label.get(conclusion.governing)
     return Summary(
         verdict=_VERDICTS[conclusion.verdict] if conclusion.order else "this sheet has no criteria",
-        governing=_in_short(governing) if isinstance(governing, InequalityLine | RuleLine) else "",
+        governing=_in_short(governing) if isinstance(governing, InequalityLine | RuleLine) else (),
         criteria=tuple(
-            _criterion_row(line, line.label == conclusion.governing)
+            _criterion_row(line, "governs" if line.label == conclusion.governing else "does not govern")
             for line in criteria
             if isinstance(line, InequalityLine | RuleLine)
         ),
@@ -174,30 +161,29 @@ def _summary(conclusion: ConclusionLine, lines: Sequence[Line]) -> Summary:
     )
 
 
-def _in_short(line: CriterionLine) -> str:
+def _in_short(line: CriterionLine) -> Paragraph:
     if isinstance(line, RuleLine):
-        return f"{in_words(line)}: {line.verdict}"
-    shown = "".join(span.text for span in sides(line))
-    return f"{in_words(line)}: {shown}, utilisation {line.utilisation_text}"
+        return (Span(f"{in_words(line)}: "), found(line), Span(f", {line.verdict}"))
+    return (Span(f"{in_words(line)}: "), *sides(line), Span(", utilisation "), utilisation(line))
 
 
-def _criterion_row(line: CriterionLine, governs: bool) -> CriterionRow:
-    link = anchors.to_line(line.label)
+def _criterion_row(line: CriterionLine, governs: str) -> CriterionRow:
+    name = Span(in_words(line), anchors.to_line(line.label))
     if isinstance(line, RuleLine):
-        return CriterionRow(Span(in_words(line), link), (found(line),), "", line.verdict, governs)
-    return CriterionRow(Span(in_words(line), link), sides(line), line.utilisation_text, line.verdict, governs)
+        return CriterionRow(name, (found(line),), Span(""), line.verdict, governs)
+    return CriterionRow(name, sides(line), utilisation(line), line.verdict, governs)
 
 
 def _headroom_row(headroom: Headroom, by_label: Mapping[str, Line]) -> HeadroomRow:
     datum = by_label[headroom.datum]
     criterion = by_label[headroom.criterion]
-    words = datum.description if isinstance(datum, Valued) else ""
+    to_criterion, to_datum = anchors.to_line(headroom.criterion), anchors.to_line(headroom.datum)
     name = in_words(criterion) if isinstance(criterion, InequalityLine | RuleLine) else headroom.criterion
     return HeadroomRow(
-        criterion=Span(name, anchors.to_line(headroom.criterion)),
-        datum=Span(words, anchors.to_line(headroom.datum)),
+        criterion=Span(name, to_criterion),
+        datum=Span(datum.description if isinstance(datum, Valued) else "", to_datum),
         symbol=headroom.datum,
-        present=headroom.present_text,
-        limit=headroom.limit_text,
+        present=Span(headroom.present_text, to_datum),
+        limit=Span(headroom.limit_text, to_criterion),
         remark=headroom.remark,
     )

@@ -22,12 +22,8 @@ Literal = None | bool | int | str | Mathematics | Sequence["Literal"] | Mapping[
 def literal(value: Literal) -> str:
     """The value as a Typst expression. Keys of mappings are our own names, values may be any text."""
     match value:
-        case None:
-            return "none"
-        case bool():
-            return "true" if value else "false"
-        case int():
-            return str(value)
+        case None | bool() | int():
+            return str(value).lower()
         case str():
             return typst.string(on_paper(value))
         case Mathematics(source):

@@ -70,52 +70,31 @@ class WorkRow:
 
 @dataclass(frozen=True)
 class Text:
-    """A paragraph of the template."""
+    """A paragraph of the template, or a heading below that of the section."""
 
     spans: Paragraph
-
-
-@dataclass(frozen=True)
-class Heading:
-    """A heading below that of the section."""
-
-    title: str
-
-
-@dataclass(frozen=True)
-class DataTable:
-    """Data lines that stand together."""
-
-    rows: tuple[DataRow, ...]
-
-
-@dataclass(frozen=True)
-class WorkTable:
-    """Lines of working that stand together."""
-
-    rows: tuple[WorkRow, ...]
-
-
-Item = Text | Heading | DataTable | WorkTable
+    heading: bool = False
 
 
 @dataclass(frozen=True)
 class Section:
-    """A part of a sheet under one heading."""
+    """A part of a sheet under one heading: opening text, its data in one table, then the working with text between."""
 
     title: str
-    items: tuple[Item, ...]
+    opening: tuple[Text, ...]
+    data: tuple[DataRow, ...]
+    work: tuple[WorkRow | Text, ...]
 
 
 @dataclass(frozen=True)
 class CriterionRow:
-    """A criterion in the summary, with whether it governs."""
+    """A criterion in the summary, with the words that say whether it governs."""
 
     description: Span
     sides: tuple[Span, ...]
-    utilisation: str
+    utilisation: Span
     verdict: str
-    governs: bool
+    governs: str
 
 
 @dataclass(frozen=True)
@@ -125,8 +104,8 @@ class HeadroomRow:
     criterion: Span
     datum: Span
     symbol: str
-    present: str
-    limit: str
+    present: Span
+    limit: Span
     remark: str
 
 
@@ -135,7 +114,7 @@ class Summary:
     """The end of a sheet; `verdict` in a sentence."""
 
     verdict: str
-    governing: str
+    governing: Paragraph
     criteria: tuple[CriterionRow, ...]
     headrooms: tuple[HeadroomRow, ...]
     open_items: tuple[str, ...]

@@ -13,7 +13,7 @@ from calcbook.records.units import KINDS, UNITS
 
 @cache
 def _registry() -> Any:  # pint's registry type is built at run time
-    registry = pint.UnitRegistry(on_redefinition="raise")
+    registry: Any = pint.UnitRegistry(on_redefinition="raise")
     registry.define("hp_imperial = 745.7 * watt")
     registry.define("hp_metric = 735.5 * watt")
     return registry

@@ -1,4 +1,4 @@
-"""What JupyterLab shows for a line: the record, LaTeX in markdown, and plain text. No HTML, which it would not trust."""
+"""What JupyterLab shows for a line: the record, LaTeX in markdown, plain text; no HTML, which it would not trust."""
 
 from __future__ import annotations
 
@@ -67,7 +67,8 @@ def _plain(line: Line) -> str:
         case ChoiceLine():
             return f"{line.description}: {line.text}"
         case InequalityLine():
-            return f"{line.left} {line.operator} {line.right}: {line.left_text} {line.operator} {line.right_text}: {line.verdict}"
+            values = f"{line.left_text} {line.operator} {line.right_text}"
+            return f"{line.left} {line.operator} {line.right}: {values}: {line.verdict}"
         case RuleLine():
             return f"{line.requirement}: {line.found or 'nothing stated'}: {line.verdict}"
         case DerivationLine():

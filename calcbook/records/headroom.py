@@ -63,9 +63,7 @@ class _Trial:
         return done.utilisations[self.criterion.label]
 
 
-def _turning_point(
-    lines: Sequence[Line], criterion: InequalityLine, datum: DatumLine, look_up: LookUp
-) -> float | None:
+def _turning_point(lines: Sequence[Line], criterion: InequalityLine, datum: DatumLine, look_up: LookUp) -> float | None:
     trial = _Trial(lines, criterion, datum, look_up)
     met = criterion.verdict == "met"
     for ratio in (2.0, 0.5):
@@ -112,8 +110,8 @@ def _solved(lines: Sequence[Line], criterion: InequalityLine, datum: DatumLine, 
     by_label = {line.label: line for line in lines}
     unknown = symbol(datum.label)
     try:
-        equation = _in_terms_of(by_label, criterion.left, datum.label) - _in_terms_of(by_label, criterion.right, datum.label)
-        solutions = [complex(solution) for solution in sympy.solve(equation, unknown)]
+        left, right = (_in_terms_of(by_label, side, datum.label) for side in (criterion.left, criterion.right))
+        solutions = [complex(solution) for solution in sympy.solve(left - right, unknown, rational=False)]
     except (NotImplementedError, _NotAlgebraicError, TypeError):
         return None
     real = [solution.real for solution in solutions if abs(solution.imag) <= 1e-12 * abs(solution.real)]
@@ -132,11 +130,13 @@ def _in_terms_of(by_label: dict[str, Line], label: str, unknown: str) -> Any:
     if isinstance(line, StepLine) and not line.adopted:
         if any(len(binding.rests_on) != 1 for binding in line.bindings):
             raise _NotAlgebraicError
-        parts = {symbol(binding.symbol): _in_terms_of(by_label, binding.rests_on[0], unknown) for binding in line.bindings}
+        pairs = ((binding.symbol, binding.rests_on[0]) for binding in line.bindings)
+        parts = {symbol(name): _in_terms_of(by_label, rests_on, unknown) for name, rests_on in pairs}
         return expression(line.written).subs(parts, simultaneous=True)
-    if isinstance(line, TableLine) and any(_rests_on(by_label, argument.rests_on, unknown) for argument in line.arguments):
+    if isinstance(line, TableLine) and _rests_on(by_label, label, unknown):
         raise _NotAlgebraicError
-    assert isinstance(line, Valued)
+    if not isinstance(line, Valued):
+        raise _NotAlgebraicError
     return sympy.Float(line.si)
 
 

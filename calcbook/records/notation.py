@@ -9,7 +9,6 @@ from importlib.resources import files
 
 from calcbook.errors import DimensionFault, nearest
 from calcbook.records.quantity import Quantity
-from calcbook.records.units import kind_in_words
 
 
 @dataclass(frozen=True)
@@ -51,7 +50,7 @@ def out_of_range(entry: Name, quantity: Quantity) -> str:
     """What is wrong with a number outside the entry's range, in the entry's own unit; "" where it is inside."""
     if within(entry.range, quantity.number):
         return ""
-    return f"{kind_in_words(entry.name)} is {quantity.number:g}; allowed is {range_in_words(entry.range)}"
+    return f"{entry.name} is {quantity.number:g}; allowed is {range_in_words(entry.range)}"
 
 
 def range_in_words(text: str) -> str:

@@ -77,6 +77,6 @@ def _in_order(sides: tuple[str, str], difference: float) -> bool:
 
 
 def _read_back(text: str) -> float:
-    number = text.split("\N{NO-BREAK SPACE}")[0].replace(MINUS, "-").rstrip("°")
+    number = text.split("\N{NO-BREAK SPACE}", maxsplit=1)[0].replace(MINUS, "-").rstrip("°")
     mantissa, _, power = number.partition("×10")
     return float(mantissa) * 10.0 ** int(power.translate(_DIGITS) or "0")

@@ -57,7 +57,8 @@ def recompute(lines: Iterable[Line], changes: Mapping[str, Quantity | str], look
     does not reach.
     """
     lines = tuple(lines)
-    changeable = [line.label for line in lines if isinstance(line, DatumLine | ChoiceLine | BroughtForwardLine | TableLine)]
+    sorts = DatumLine | ChoiceLine | BroughtForwardLine | TableLine
+    changeable = [line.label for line in lines if isinstance(line, sorts)]
     for label in changes:
         if label not in changeable:
             raise EvaluationFault(label, f"not a line that can be changed; {nearest(label, changeable)}")

@@ -22,10 +22,8 @@ _TRUTH = (
 class _WithoutArithmetic:
     """Refuses every operator that would make a number outside of the trace."""
 
-    label: str
-
     def _no_arithmetic(self, *_: object) -> NoReturn:
-        raise DimensionFault(f"{self.label} {_ARITHMETIC}")
+        raise DimensionFault(f"{self!r} {_ARITHMETIC}")
 
     __add__ = __radd__ = __sub__ = __rsub__ = __mul__ = __rmul__ = _no_arithmetic
     __truediv__ = __rtruediv__ = __floordiv__ = __rfloordiv__ = __mod__ = __rmod__ = _no_arithmetic
@@ -33,22 +31,19 @@ class _WithoutArithmetic:
     __float__ = __int__ = __complex__ = __index__ = _no_arithmetic
 
     def __bool__(self) -> NoReturn:
-        raise DimensionFault(f"{self.label} {_TRUTH}")
+        raise DimensionFault(f"{self!r} {_TRUTH}")
 
     def __eq__(self, other: object) -> NoReturn:
-        raise DimensionFault(f"{self.label} {_TRUTH}")
+        raise DimensionFault(f"{self!r} {_TRUTH}")
 
     def __ne__(self, other: object) -> NoReturn:
-        raise DimensionFault(f"{self.label} {_TRUTH}")
+        raise DimensionFault(f"{self!r} {_TRUTH}")
 
     def __lt__(self, other: object) -> NoReturn:
-        raise DimensionFault(f"{self.label}: a criterion is <= or >=, so that the limit itself is allowed")
+        raise DimensionFault(f"{self!r}: a criterion is <= or >=, so that the limit itself is allowed")
 
     __gt__ = __lt__
     __hash__ = None  # type: ignore[assignment]  # nothing may key on a value
-
-    def __repr__(self) -> str:
-        return f"<line {self.label}>"
 
 
 @dataclass(frozen=True, eq=False, repr=False)
@@ -59,6 +54,9 @@ class Value(_WithoutArithmetic):
     quantity: Quantity
     si: float
     text: str
+
+    def __repr__(self) -> str:
+        return f"line {self.label}"
 
     def __le__(self, other: Value) -> Comparison:
         return Comparison(self, "<=", other)
@@ -74,6 +72,9 @@ class Choice(_WithoutArithmetic):
     label: str
     text: str
 
+    def __repr__(self) -> str:
+        return f"line {self.label}"
+
 
 @dataclass(frozen=True, eq=False, repr=False)
 class Comparison(_WithoutArithmetic):
@@ -85,14 +86,12 @@ class Comparison(_WithoutArithmetic):
 
     def __post_init__(self) -> None:
         if not isinstance(self.right, Value):
-            raise DimensionFault(f"{self.left.label} {self.operator} {self.right!r}: both sides must be lines of the sheet")
+            raise DimensionFault(f"{self!r}: both sides must be lines of the sheet")
         if self.left.quantity.kind != self.right.quantity.kind:
             raise DimensionFault(
-                f"{self.left.label} {self.operator} {self.right.label}: "
-                f"{self.left.quantity.kind} cannot be compared with {self.right.quantity.kind}"
+                f"{self!r}: {self.left.quantity.kind} cannot be compared with {self.right.quantity.kind}"
             )
 
-    @property
-    def label(self) -> str:
-        """The comparison as text."""
-        return f"{self.left.label} {self.operator} {self.right.label}"
+    def __repr__(self) -> str:
+        right = self.right.label if isinstance(self.right, Value) else repr(self.right)
+        return f"{self.left.label} {self.operator} {right}"

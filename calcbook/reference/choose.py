@@ -12,7 +12,12 @@ LOADED_CONDUCTORS = "iec-60364-5-52-523.6"
 RESISTANCE = "iec-60228-resistance"
 
 _IN_WALL_OR_GROUND = {("PVC70", 2): "b.52.2", ("XLPE90", 2): "b.52.3", ("PVC70", 3): "b.52.4", ("XLPE90", 3): "b.52.5"}
-_FREE_AIR = {("PVC70", "Cu"): "b.52.10", ("PVC70", "Al"): "b.52.11", ("XLPE90", "Cu"): "b.52.12", ("XLPE90", "Al"): "b.52.13"}
+_FREE_AIR = {
+    ("PVC70", "Cu"): "b.52.10",
+    ("PVC70", "Al"): "b.52.11",
+    ("XLPE90", "Cu"): "b.52.12",
+    ("XLPE90", "Al"): "b.52.13",
+}
 _FREE_AIR_METHODS = ("E", "F", "G")
 _THREE_PHASE = ("L1L2L3", "L1L2L3N")
 

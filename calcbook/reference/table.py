@@ -11,7 +11,7 @@ from __future__ import annotations
 import csv
 from collections.abc import Mapping
 from dataclasses import dataclass
-from functools import cache
+from functools import cache, cached_property
 from importlib.resources import files
 from pathlib import Path
 
@@ -57,6 +57,7 @@ class Table:
         """The notation entry of the values."""
         return named(self.header["value"])
 
+    @cached_property
     def keys(self) -> dict[str, str]:
         """The key columns: name -> unit, "" for words."""
         pairs = (head.rstrip("]").partition(" [") for head in self.heads if head not in _NOT_KEYS)
@@ -71,7 +72,7 @@ class Table:
         self._check_arguments(arguments)
         rows = list(self.rows)
         remark = ""
-        keys = self.keys()
+        keys = self.keys
         stepped = self.header.get("between", "").removesuffix(" up")
         for name in sorted(keys, key=lambda name: name == stepped):
             if name == stepped:
@@ -79,10 +80,10 @@ class Table:
             else:
                 rows = self._equal(rows, name, arguments[name])
         row = rows[0]
-        name = self.value_name
+        entry = self.value_name
         columns = [f"{key} {row[self._head(key)]}" for key in keys if key != self.header["row"]]
         return Found(
-            value=Quantity(float(row["value"]), name.unit, name.kind),
+            value=Quantity(float(row["value"]), entry.unit, entry.kind),
             row=self._row_text(row),
             column=", ".join(columns),
             status=row["status"],
@@ -94,24 +95,24 @@ class Table:
         for name, value in arguments.items():
             if name in fixed and _as_text(value) != fixed[name]:
                 raise LookUpFault(self.title, f"holds for {name} {fixed[name]}, not {_as_text(value)}")
-            if name not in fixed and name not in self.keys():
-                raise LookUpFault(self.title, f'has no key "{name}"; {nearest(name, [*self.keys(), *fixed])}')
-        for name in self.keys():
+            if name not in fixed and name not in self.keys:
+                raise LookUpFault(self.title, f'has no key "{name}"; {nearest(name, [*self.keys, *fixed])}')
+        for name in self.keys:
             if name not in arguments:
                 raise LookUpFault(self.title, f"needs {name}")
 
     def _head(self, name: str) -> str:
-        unit = self.keys()[name]
+        unit = self.keys[name]
         return f"{name} [{unit}]" if unit else name
 
     def _row_text(self, row: Mapping[str, str]) -> str:
         name = self.header["row"]
-        unit = self.keys()[name]
+        unit = self.keys[name]
         text = row[self._head(name)]
         return with_unit(print_plain(float(text)), unit) if unit else text
 
     def _equal(self, rows: list[Mapping[str, str]], name: str, wanted: Key) -> list[Mapping[str, str]]:
-        head, unit = self._head(name), self.keys()[name]
+        head, unit = self._head(name), self.keys[name]
         if unit:
             found = [row for row in rows if float(row[head]) == _number(wanted, unit, self.title, name)]
         else:
@@ -123,7 +124,7 @@ class Table:
 
     def _from_row(self, rows: list[Mapping[str, str]], name: str, wanted: Key) -> tuple[list[Mapping[str, str]], str]:
         """The row of a stepped key: the exact one, else the next greater, else a last row that holds beyond."""
-        head, unit = self._head(name), self.keys()[name]
+        head, unit = self._head(name), self.keys[name]
         number = _number(wanted, unit, self.title, name)
         above = [row for row in rows if float(row[head]) >= number]
         if above:

@@ -1,17 +1,17 @@
-"""A workbook before it is executed: the cells of its templates in order, with one parameters cell and one set-up cell."""
+"""A workbook before it is executed: its templates' cells in order, with one parameters cell and one set-up cell."""
 
 from __future__ import annotations
 
 import copy
 from collections.abc import Iterator, Sequence
 
-from nbformat.v4 import new_code_cell, new_notebook
 from nbformat.notebooknode import NotebookNode
+from nbformat.v4 import new_code_cell, new_notebook
 
 from calcbook.errors import TemplateFault
 from calcbook.records.project import SheetPlan
 from calcbook.records.trace import SCHEMA_VERSION
-from calcbook.run.cells import CONCLUSION, DERIVATION, PARAMETERS, SETUP, tags_of, text_of
+from calcbook.run.cells import CONCLUSION, DERIVATION, PARAMETERS, SETUP, tags_of
 from calcbook.run.parameters import merge_parameters
 from calcbook.run.setup import merge_setups
 from calcbook.run.templates import Template, taken_from
@@ -38,7 +38,9 @@ def assemble(plan: SheetPlan, templates: Sequence[Template]) -> NotebookNode:
         if position:
             cells.append(_code(f"{template.name}-begin", f'sheet.begin("{template.name}")'))
         cells.extend(_own_cells(template))
-    cells.append(_code(CONCLUSION, text_of(templates[-1].cell(CONCLUSION)), CONCLUSION))
+    conclusions = [template.conclusion for template in templates if template.conclusion]
+    if conclusions:
+        cells.append(_code(CONCLUSION, conclusions[-1], CONCLUSION))
     about = {
         "schema": SCHEMA_VERSION,
         "sheet": plan.number,

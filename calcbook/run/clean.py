@@ -56,7 +56,7 @@ def _clean_cell(cell: nbformat.NotebookNode) -> None:
 
 
 def _join_streams(outputs: Iterable[Any]) -> list[Any]:
-    """Outputs with neighbouring streams joined, standard output first: a kernel sends the two in chunks, in any order."""
+    """Outputs with neighbouring streams joined, standard output first: a kernel sends them in chunks, in any order."""
     joined: list[Any] = []
     streams: dict[str, Any] = {}
     for output in outputs:

@@ -7,12 +7,12 @@ classes, stands in `warm_engine` and is fetched when its name is asked for: whoe
 from __future__ import annotations
 
 import importlib
-from typing import Any
 
 
-def __getattr__(name: str) -> Any:
+def __getattr__(name: str) -> type:
     """`WarmEngine`, the engine class that papermill calls."""
     if name != "WarmEngine":
         raise AttributeError(f"module {__name__!r} has no attribute {name!r}")
     importlib.import_module("papermill.engines")
-    return importlib.import_module("calcbook.run.warm_engine").WarmEngine
+    engine: type = importlib.import_module("calcbook.run.warm_engine").WarmEngine
+    return engine

@@ -13,7 +13,7 @@ from typing import Any, Literal
 import nbformat
 import papermill
 from nbclient.exceptions import DeadKernelError
-from nbformat import NotebookNode
+from nbformat import NotebookNode, from_dict
 from papermill.engines import papermill_engines
 from papermill.exceptions import PapermillExecutionError
 
@@ -25,12 +25,15 @@ from calcbook.run.assemble import assemble
 from calcbook.run.cells import text_of
 from calcbook.run.clean import canonical_text, clean
 from calcbook.run.engine import WarmEngine
+from calcbook.run.helper import can_fork
 from calcbook.run.kernel import kernel_options
+from calcbook.run.messages import process_ended
 from calcbook.run.parameters import GIVEN
 from calcbook.run.templates import check_parameters, find_template
-from calcbook.run.warm_engine import process_ended
 
 EngineName = Literal["warm", "kernel"]
+
+_WARM = {"engine_name": "calcbook", "request_save_on_cell_execute": False}
 
 papermill_engines.register("calcbook", WarmEngine)
 
@@ -56,9 +59,9 @@ def execute_sheet(plan: SheetPlan, project_folder: Path, engine: EngineName = "w
     """Assemble and execute one sheet.
 
     Parameters: `plan` the sheet; `project_folder` is where the project's own templates may stand; `engine` is "warm"
-    (a fork of the warm helper) or "kernel" (the ordinary kernel): the results are the same. Result: the workbook and its
-    trace; where the sheet fails, why, and the lines made until then. Raises WorkspaceFault where the machine does not
-    let it run.
+    (a fork of the warm helper, where the machine can) or "kernel" (the ordinary kernel): the results are the same.
+    Result: the workbook and its trace; where the sheet fails, why, and the lines made until then. Raises WorkspaceFault
+    where the machine does not let it run.
     """
     try:
         templates = [find_template(name, project_folder) for name in plan.templates]
@@ -87,7 +90,7 @@ def _execute(
         folder = Path(name)
         source, target = folder / "sheet.ipynb", folder / "executed.ipynb"
         nbformat.write(notebook, source)
-        options = {"engine_name": "calcbook"} if engine == "warm" else kernel_options(folder)
+        options = _WARM if engine == "warm" and can_fork() else kernel_options(folder)
         try:
             return papermill.execute_notebook(source, target, parameters, progress_bar=False, **options), None
         except PapermillExecutionError as error:
@@ -99,7 +102,7 @@ def _execute(
 def _marked_dead(notebook: NotebookNode, detail: str) -> NotebookNode:
     """The notebook of a kernel that died, with the error in the cell where it did: the last that was started."""
     started = [cell for cell in notebook.cells if cell.metadata.papermill.get("start_time")]
-    started[-1].outputs = [process_ended(detail)]
+    started[-1].outputs = [from_dict(process_ended(detail))]
     started[-1].execution_count = None
     return notebook
 

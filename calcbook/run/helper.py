@@ -9,11 +9,12 @@ import signal
 import subprocess
 import sys
 import threading
-from collections.abc import Generator, Iterator, Mapping, Sequence
-from typing import Any, Self
+from collections.abc import Generator, Sequence
+from typing import Self
 
 from calcbook.errors import WorkspaceFault
-from calcbook.run.messages import DONE, CellRun, receive, send
+from calcbook.run.cells import Cell
+from calcbook.run.messages import DONE, CellRun, process_ended, receive, send
 
 CALCULATION_ENVIRONMENT = {
     "OPENBLAS_NUM_THREADS": "1",
@@ -23,10 +24,9 @@ CALCULATION_ENVIRONMENT = {
 }
 
 
-class SheetProcessEnded(Exception):
-    """The process of a sheet ended inside a cell: killed, crashed or left by the cell's own doing."""
-
-    MESSAGE = "the process of this sheet ended in this cell"
+def can_fork() -> bool:
+    """Whether this machine can fork a process that has libraries loaded; macOS has the call, but not the safety."""
+    return hasattr(os, "fork") and sys.platform != "darwin"
 
 
 class WarmHelper:
@@ -35,7 +35,7 @@ class WarmHelper:
     def __init__(self) -> None:
         """Start the process: it loads the calculation libraries while the caller goes on."""
         self._lock = threading.Lock()
-        self._process = subprocess.Popen(  # noqa: S603 (our own interpreter and module)
+        self._process = subprocess.Popen(
             [sys.executable, "-P", "-m", "calcbook.run.warm"],
             stdin=subprocess.PIPE,
             stdout=subprocess.PIPE,
@@ -64,10 +64,10 @@ class WarmHelper:
         """The id of the helper process."""
         return self._process.pid
 
-    def run(self, cells: Sequence[Mapping[str, Any]]) -> Iterator[CellRun]:
+    def run(self, cells: Sequence[Cell]) -> Generator[CellRun, None, None]:
         """Execute cells in a fresh child of the helper; each executed cell is yielded as soon as it is done.
 
-        Raises SheetProcessEnded where the child ended inside a cell, WorkspaceFault where the helper itself is gone.
+        Where the child ends inside a cell, the last run says so. Raises WorkspaceFault where the helper itself is gone.
         A caller that stops half-way (an interrupt, an error of its own) ends the helper with the child.
         """
         with self._lock:
@@ -79,12 +79,12 @@ class WarmHelper:
                 if not complete:
                     self.kill()
         if end != DONE:
-            raise SheetProcessEnded(f"{SheetProcessEnded.MESSAGE} ({end})")
+            yield CellRun(-1, None, [process_ended(end)], False, [])
 
-    def _conversation(self, cells: Sequence[Mapping[str, Any]]) -> Generator[CellRun, None, str]:
+    def _conversation(self, cells: Sequence[Cell]) -> Generator[CellRun, None, str]:
         request = [{key: cell[key] for key in ("cell_type", "metadata", "source")} for cell in cells]
         try:
-            send(self._requests, request)
+            send(self._requests, {"cells": request})
         except BrokenPipeError:
             raise WorkspaceFault(self._gone()) from None
         while (message := receive(self._answers)) is not None:

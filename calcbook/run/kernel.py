@@ -23,5 +23,5 @@ class OwnKernelManager(AsyncKernelManager):  # type: ignore[misc]
 
 def kernel_options(empty_folder: Path) -> dict[str, Any]:
     """The options that papermill's own engine needs; `empty_folder` stands in for the user's IPython folder."""
-    arguments = [f"--ipython-dir={empty_folder}", "--log-level=ERROR"]
+    arguments = [f"--ipython-dir={empty_folder}", "--log-level=CRITICAL"]
     return {"kernel_manager_class": OwnKernelManager, "extra_arguments": arguments}

@@ -88,8 +88,8 @@ def _read_one(template: str, statement: ast.stmt, lines: list[str], description:
         raise _fault(template, number, f'"{name}" must be a text with its unit in it: {_FORM}')
     if not description:
         raise _fault(template, number, f'"{name}" has no description: {_FORM}')
-    if line.count("=") != 1 or line.count("#") != 1 or ";" in line:
-        raise _fault(template, number, 'a line holds one "=", one "#" and no ";", or papermill misreads it')
+    if line.count("=") != 1 or line.count("#") != 1:
+        raise _fault(template, number, 'a line holds one "=" and one "#", or papermill misreads it')
     return Parameter(name, kind, default, description)
 
 

@@ -13,9 +13,9 @@ import io
 import json
 import sys
 from binascii import b2a_base64
-from collections.abc import Callable, Iterator, Mapping, Sequence
+from collections.abc import Callable, Iterator, Mapping, MutableMapping, Sequence
 from contextlib import contextmanager, redirect_stderr, redirect_stdout
-from typing import Any
+from typing import Any, TypeVar
 
 from IPython.core.displayhook import DisplayHook
 from IPython.core.displaypub import DisplayPublisher
@@ -25,6 +25,8 @@ from traitlets.config import Config
 
 from calcbook.run.cells import Cell, is_executable, stops_at_error, text_of
 from calcbook.run.messages import CellRun, Output
+
+Notebook = TypeVar("Notebook", bound=MutableMapping[str, Any])
 
 _CONFIG = Config({"HistoryManager": {"enabled": False, "hist_file": ":memory:"}})
 _MISSING = object()
@@ -98,7 +100,7 @@ def _plain_default(value: object) -> object:
     raise TypeError(f"{value!r} is not JSON serializable")
 
 
-def _plain(data: object) -> Any:
+def _plain(data: object) -> object:
     """Data as they arrive in a notebook after their way through JSON."""
     return json.loads(json.dumps(data, default=_plain_default, allow_nan=False))
 
@@ -222,7 +224,7 @@ def _run_cell(shell: _NotebookShell, index: int, source: str) -> CellRun:
     return CellRun(index, count, outputs.current, bool(result.success), updated)
 
 
-def run_notebook(notebook: Mapping[str, Any]) -> Any:
+def run_notebook(notebook: Notebook) -> Notebook:
     """A copy of a notebook with its cells evaluated in this process, up to the first error.
 
     The entry for property tests and benchmarks: outputs and execution counts equal those of the ordinary kernel.

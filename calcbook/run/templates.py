@@ -36,8 +36,14 @@ class Template:
     takes: tuple[str, ...]
 
     def cell(self, tag: str) -> Cell:
-        """The one code cell with this tag."""
+        """The one code cell with this tag; raises TemplateFault where there are none or several."""
         return _only_cell(self.name, self.notebook.cells, tag)
+
+    @property
+    def conclusion(self) -> str:
+        """The code of the conclusion; "" in a template that has none, such as one that only derives."""
+        tagged = any(CONCLUSION in tags_of(cell) for cell in self.notebook.cells)
+        return text_of(self.cell(CONCLUSION)) if tagged else ""
 
 
 def folders(project_folder: Path | None = None) -> tuple[Path, ...]:
@@ -75,8 +81,7 @@ def read_template(path: Path) -> Template:
     for taken in takes:
         if taken not in declared:
             raise TemplateFault(name, f'takes "{taken}", which is none of its parameters; {nearest(taken, declared)}')
-    for tag in (SETUP, CONCLUSION):
-        _only_cell(name, notebook.cells, tag)
+    _only_cell(name, notebook.cells, SETUP)
     return Template(name, notebook, parameters, gives, takes)
 
 
@@ -137,7 +142,7 @@ def taken_from(templates: Sequence[Template]) -> dict[str, str]:
                 taken[name] = sources[0]
             else:
                 asked.add(name)
-        given = {name: template.name for name in template.gives} | given
+        given = dict.fromkeys(template.gives, template.name) | given
     return {name: template for name, template in taken.items() if name not in asked}
 
 

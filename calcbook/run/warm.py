@@ -21,6 +21,7 @@ from calcbook import sheet
 from calcbook.run.messages import DONE, receive, send
 from calcbook.run.shell import run_cells
 
+_FIRST_CELL = "from IPython.display import display\ndisplay({'text/plain': ''}, raw=True)\n1"
 _STDIN, _STDOUT, _STDERR = 0, 1, 2
 
 
@@ -33,19 +34,18 @@ def main() -> None:
     require_one_thread()
     gc.collect()
     gc.freeze()
-    while (cells := receive(_STDIN)) is not None:
-        serve(cells, answers)
+    while (request := receive(_STDIN)) is not None:
+        serve(request["cells"], answers)
 
 
 def warm_up() -> None:
     """Fill the caches of what sheets import, and execute a first cell, so that no child has to."""
     sheet.prime()
-    first = "from IPython.display import display\ndisplay({'text/plain': ''}, raw=True)\n1"
-    run_cells([{"cell_type": "code", "metadata": {}, "source": first}], lambda run: None)
+    run_cells([{"cell_type": "code", "metadata": {}, "source": _FIRST_CELL}], lambda run: None)
 
 
 def require_one_thread() -> None:
-    """Raise RuntimeError where this process has a second thread: a fork would lose it, and with it any lock it holds."""
+    """Raise RuntimeError where this process has a second thread: a fork loses it, and with it any lock it holds."""
     tasks = Path("/proc/self/task")
     count = len(list(tasks.iterdir())) if tasks.is_dir() else threading.active_count()
     if count != 1:
@@ -72,7 +72,8 @@ def _be_the_child(cells: list[dict[str, Any]], writing: int) -> None:
     code = 1
     try:
         nothing = os.open(os.devnull, os.O_RDWR)
-        for descriptor in (_STDIN, _STDOUT, _STDERR):
+        for descriptor in (_FIRST_CELL = "from IPython.display import display\ndisplay({'text/plain': ''}, raw=True)\n1"
+_STDIN, _STDOUT, _STDERR):
             os.dup2(nothing, descriptor)
         random.seed()
         run_cells(cells, lambda run: send(writing, asdict(run)))

@@ -63,7 +63,7 @@ class _LaTeX:
     def symbol(self, label: str) -> str:
         return symbol(label)
 
-    def value(self, plain: str, label: str) -> str:  # noqa: ARG002 - no links in JupyterLab's mathematics
+    def value(self, plain: str, label: str) -> str:
         return text(plain)
 
     def number(self, plain: str) -> str:

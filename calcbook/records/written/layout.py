@@ -60,7 +60,7 @@ class Layout:
         self.setter = setter
         self.texts = texts
 
-    def of(self, node: Node) -> str:  # noqa: PLR0911 - one return a kind of node reads best
+    def of(self, node: Node) -> str:
         """A node as it stands in a formula."""
         setter = self.setter
         match node:
@@ -161,7 +161,9 @@ class Layout:
         setter = self.setter
         if self.texts is None:
             return setter.row([setter.below("∑", "", ""), self.of(body)])
-        keyed = {label: text for label in map(write, symbols_of(body)) if not isinstance(text := self.texts[label], str)}
+        keyed = {
+            label: text for label in map(write, symbols_of(body)) if not isinstance(text := self.texts[label], str)
+        }
         count = min((len(texts) for texts in keyed.values()), default=0)
         shown = range(count) if count <= _MOST_TERMS else [0, 1, count - 1]
         terms = []

@@ -29,7 +29,7 @@ def symbol(label: str, link: str = "") -> str:
     letter = f"<mi>{escape(entry.letter)}</mi>"
     subscript = ",".join(part for part in (entry.subscript, key.rstrip("]")) if part)
     if subscript:
-        letter = f'<msub>{letter}<mtext>{escape(subscript)}</mtext></msub>'
+        letter = f"<msub>{letter}<mtext>{escape(subscript)}</mtext></msub>"
     if entry.function:
         letter = f'<mrow><mi>{escape(entry.function)}</mi><mspace width="0.17em"/>{letter}</mrow>'
     return f'<mrow href="{escape(link)}">{letter}</mrow>' if link else letter
@@ -40,7 +40,7 @@ class _MathML:
         self.links = links
 
     def row(self, parts: Sequence[str]) -> str:
-        spaced = []
+        spaced: list[str] = []
         for part in parts:
             if spaced and not part.startswith("<mo") and not spaced[-1].startswith("<mo"):
                 spaced.append('<mspace width="0.17em"/>')
@@ -53,7 +53,7 @@ class _MathML:
     def value(self, text: str, label: str) -> str:
         link = self.links.get(label)
         shown = escape(text)
-        return f'<mtext><a href="{escape(link)}">{shown}</a></mtext>' if link else f"<mtext>{shown}</mtext>"
+        return f'<mn><a href="{escape(link)}">{shown}</a></mn>' if link else f"<mn>{shown}</mn>"
 
     def number(self, text: str) -> str:
         return f"<mn>{escape(text)}</mn>"

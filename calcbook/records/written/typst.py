@@ -39,7 +39,7 @@ def string(text: str) -> str:
 
 class _Typst:
     def row(self, parts: Sequence[str]) -> str:
-        spaced = []
+        spaced: list[str] = []
         for part in parts:
             if spaced and not part.startswith("class(") and not spaced[-1].startswith("class("):
                 spaced.append("thin")
@@ -49,7 +49,7 @@ class _Typst:
     def symbol(self, label: str) -> str:
         return symbol(label)
 
-    def value(self, text: str, label: str) -> str:  # noqa: ARG002 - paper has no links
+    def value(self, text: str, label: str) -> str:
         return string(text)
 
     def number(self, text: str) -> str:
