@@ -68,6 +68,7 @@ class Sheet:
         self.origins: Mapping[str, Any] = given.get("origins", {})
         self.adopted: Mapping[str, Any] = given.get("adopted", {})
         self.signed_off: Mapping[str, Any] = given.get("signed_off", {})
+        self.editions: Mapping[str, str] = given.get("editions", {})
         self.lines: list[Line] = []
 
     def stated(self, *parameters: str) -> str:
@@ -168,7 +169,7 @@ class Sheet:
                     column=found.column,
                     status=found.status,
                     signed_off=SignOff(**sign_off) if sign_off else None,
-                    remark=found.remark,
+                    remark="; ".join(filter(None, (found.remark, self._other_edition(source.header)))),
                 ),
             )
         )
@@ -206,7 +207,7 @@ class Sheet:
                 bindings=tuple(
                     Binding(symbol=label, rests_on=(label,), texts=(values[label].text,)) for label in labels
                 ),
-                reference=formula.reference,
+                reference=self._dated(formula.reference),
                 second=second,
                 calculated=value,
                 calculated_text=print_calculated(value),
@@ -238,7 +239,7 @@ class Sheet:
                 utilisation=utilisation,
                 utilisation_text=print_number(utilisation),
                 verdict="met" if holds else "not met",
-                reference=cite,
+                reference=self._dated(cite),
                 headroom_of=next((data[parameter] for parameter in headroom if parameter in data), ""),
             )
         )
@@ -254,7 +255,7 @@ class Sheet:
                 found=found.text,
                 allowed=tuple(allowed),
                 verdict=judge_rule(found.text, tuple(allowed)),
-                reference=cite,
+                reference=self._dated(cite),
             )
         )
 
@@ -307,6 +308,17 @@ class Sheet:
 
     def _fault(self, line: str, message: str) -> SheetFault:
         return SheetFault(self.number, self.template, line, message)
+
+    def _dated(self, reference: str) -> str:
+        """A reference with the edition that the basis states behind each standard: IEC 60364-4-43:2008, 433.1."""
+        for standard, edition in self.editions.items():
+            reference = reference.replace(f"{standard},", f"{standard}:{edition},")
+        return reference
+
+    def _other_edition(self, header: Mapping[str, str]) -> str:
+        """What is printed where the table in store is of another edition than the basis states."""
+        stated = self.editions.get(header["standard"], header["edition"])
+        return "" if stated == header["edition"] else f"table of edition {header['edition']}; the basis states {stated}"
 
     def _entry_of(self, parameter: str, symbol: str) -> Name:
         entries = [entry for entry in names_of_parameter(parameter) if symbol in ("", entry.name)]

@@ -84,8 +84,8 @@ CAPACITY_NEEDED = Formula(
     example=Example({"I_r": "32 A", "I_2": "46.4 A", "n": "1", "C_a": "0.94", "C_g": "1"}, "34.0 A"),
     published=(
         "ABB, Electrical installation handbook",
-        "Linsley, Basic Electrical Installation Work",
         "Electrical Installation Guide, chapter G",
+        "Linsley, Basic Electrical Installation Work",
     ),
 )
 CONDUCTOR_TEMPERATURE = Formula(

@@ -41,7 +41,8 @@ CABLE_CURRENT = Derivation(
         "ambient. The resistance is taken at the greatest temperature throughout, which is on the warm side."
     ),
     stages=(
-        Stage("balance", "theta - theta_a", "R*R_th*I^2", "heat balance per length of cable: rise = loss times R_th",
+        Stage("balance", "theta - theta_a", "R*R_th*I^2",
+              "heat balance per length of cable: the rise is the loss times the thermal resistance",
               is_premise=True),
         Stage("table", "theta_max - theta_ref", "R*R_th*I_t^2", "the tabulated capacity, at the table's own ambient",
               is_premise=True),
@@ -51,10 +52,10 @@ CABLE_CURRENT = Derivation(
               "the last line divided by the one before, solved for C", derived=_ambient_factor,
               formula="ambient_factor"),
         Stage("theta_B", "theta_B", "theta_a + (theta_max - theta_a)*(I_B/I_Z)^2",
-              "the balance at I_B with R R_th from the balance at I_Z, which reaches θ max",
+              "the balance at the design current, its constant from the balance at full capacity",
               derived=_conductor_temperature, formula="conductor_temperature"),
         Stage("I_t_req", "I_t_req", CAPACITY_NEEDED.written,
-              "I_r = n I_t C_a C_g and I_2 = 1.45 n I_t C_a C_g each solved for I_t; the larger is needed",
+              "both conditions of 433.1 at their limit, each solved for the tabulated capacity; the larger is needed",
               derived=_capacity_needed, formula="capacity_needed"),
     ),
 )  # fmt: skip

@@ -38,6 +38,10 @@ REACTIVE_POWER = Formula(
     reference="power triangle",
     derivation=_DERIVATION,
     example=Example({"P_1": "10 kW", "phi": "36.87 deg"}, "7.50 kvar"),
+    published=(
+        "ElMeasure, How to select capacitor size in kvar",
+        "Gonen, Electric Power Distribution System Engineering",
+    ),
 )
 REACTIVE_POWER_OF_APPARENT = Formula(
     name="reactive_power_of_apparent",
@@ -48,6 +52,7 @@ REACTIVE_POWER_OF_APPARENT = Formula(
     reference="power triangle",
     derivation=_DERIVATION,
     example=Example({"S_1": "10 kVA", "phi": "36.87 deg"}, "6.00 kvar"),
+    published=("Gonen, Electric Power Distribution System Engineering",),
 )
 APPARENT_POWER = Formula(
     name="apparent_power",
@@ -58,6 +63,7 @@ APPARENT_POWER = Formula(
     reference="power triangle",
     derivation=_DERIVATION,
     example=Example({"P_1": "10 kW", "cos_phi": "0.8"}, "12.50 kVA"),
+    published=("Gonen, Electric Power Distribution System Engineering",),
 )
 ACTIVE_POWER_OF_APPARENT = Formula(
     name="active_power_of_apparent",
@@ -68,6 +74,7 @@ ACTIVE_POWER_OF_APPARENT = Formula(
     reference="power triangle",
     derivation=_DERIVATION,
     example=Example({"S_1": "10 kVA", "cos_phi": "0.8"}, "8.00 kW"),
+    published=("Gonen, Electric Power Distribution System Engineering",),
 )
 ACTIVE_POWER = Formula(
     name="active_power",
@@ -80,8 +87,8 @@ ACTIVE_POWER = Formula(
     example=Example({"U": "400 V", "I": "20 A", "cos_phi": "1"}, "13.86 kW"),
     published=(
         "Bird, Electrical Circuit Theory and Technology",
-        "Engineering ToolBox, Three-phase power equations",
         "electricremont, article on current in a three-phase network",
+        "Engineering ToolBox, Three-phase power equations",
         "Hambley, Electrical Engineering: Principles and Applications",
     ),
 )
@@ -105,7 +112,10 @@ APPARENT_POWER_OF_LINE = Formula(
     reference="three-phase power",
     derivation=_DERIVATION,
     example=Example({"U": "400 V", "I": "20 A"}, "13.86 kVA"),
-    published=("Bird, Electrical Circuit Theory and Technology",),
+    published=(
+        "Bird, Electrical Circuit Theory and Technology",
+        "Electrical Engineering Portal, transformer size and motor starting",
+    ),
 )
 STAR_LINE_VOLTAGE = Formula(
     name="star_line_voltage",
@@ -118,8 +128,9 @@ STAR_LINE_VOLTAGE = Formula(
     example=Example({"U_ph": "230 V"}, "398 V"),
     published=(
         "Bird, Electrical Circuit Theory and Technology",
+        "Hambley, Electrical Engineering: Principles and Applications",
         "Kuphaldt, Lessons in Electric Circuits, vol. II",
-        "common practice, no source",
+        "Mehta and Mehta, Principles of Power System",
     ),
 )
 DELTA_LINE_CURRENT = Formula(
@@ -133,6 +144,7 @@ DELTA_LINE_CURRENT = Formula(
     example=Example({"I_ph": "83.33 A"}, "144.3 A"),
     published=(
         "Bird, Electrical Circuit Theory and Technology",
+        "Hubert, Electric Machines",
         "Kuphaldt, Lessons in Electric Circuits, vol. II",
     ),
 )
@@ -145,7 +157,7 @@ PEAK_VOLTAGE = Formula(
     reference="rms and peak",
     derivation=_DERIVATION,
     example=Example({"U_ph": "230 V"}, "325 V"),
-    published=("common practice, no source",),
+    published=("Hambley, Electrical Engineering: Principles and Applications",),
 )
 
 
@@ -178,7 +190,9 @@ CURRENT_OF_ACTIVE_POWER = _current(
     "P_1/(sqrt(3)*U_r*cos_phi)",
     _BALANCED,
     Example({"P_1": "15 kW", "U_r": "415 V", "cos_phi": "0.77"}, "27.1 A"),
+    "Bird, Electrical Circuit Theory and Technology",
     "Electrical Engineering Portal, transformer size and motor starting",
+    "Sarma, Introduction to Electrical Engineering, 2001",
 )
 CURRENT_OF_APPARENT_POWER = _current(
     "current_of_apparent_power",
@@ -186,9 +200,12 @@ CURRENT_OF_APPARENT_POWER = _current(
     "S_1/(sqrt(3)*U_r)",
     _BALANCED,
     Example({"S_1": "1000 kVA", "U_r": "480 V"}, "1203 A"),
+    "Cooper Bussmann, Electrical Plan Review",
     "Electrical Engineering Portal, transformer size and motor starting",
     "Electrical Installation Guide, chapter G",
-    "Sarma, Introduction to Electrical Engineering",
+    "Glover, Sarma and Overbye, Power System Analysis and Design",
+    "Kosow, Electric Machinery and Transformers",
+    "Sarma, Introduction to Electrical Engineering, 2001",
 )
 NEUTRAL_CURRENT_OF_MOTOR = _current(
     "neutral_current_of_motor",
@@ -222,6 +239,7 @@ TWO_LINE_CURRENT_OF_MOTOR = _current(
     "P_2/(U_r*eta*cos_phi)",
     _SINGLE + "; the current enters one line and leaves by the other",
     Example({"P_2": "4 kW", "U_r": "400 V", "eta": "0.8", "cos_phi": "0.8"}, "15.62 A"),
+    "Bird, Electrical Circuit Theory and Technology",
 )
 TWO_LINE_CURRENT_OF_ACTIVE_POWER = _current(
     "two_line_current_of_active_power",
@@ -229,6 +247,7 @@ TWO_LINE_CURRENT_OF_ACTIVE_POWER = _current(
     "P_1/(U_r*cos_phi)",
     _SINGLE + "; the current enters one line and leaves by the other",
     Example({"P_1": "6 kW", "U_r": "400 V", "cos_phi": "1"}, "15.00 A"),
+    "Mondal, Electric Circuit Analysis, tutorial 19",
 )
 TWO_LINE_CURRENT_OF_APPARENT_POWER = _current(
     "two_line_current_of_apparent_power",
@@ -239,7 +258,7 @@ TWO_LINE_CURRENT_OF_APPARENT_POWER = _current(
 )
 
 
-def _apparent(name: str, purpose: str, written: str, valid: str, example: Example) -> Formula:
+def _apparent(name: str, purpose: str, written: str, valid: str, example: Example, *published: str) -> Formula:
     """Apparent power of a load that is given by its current."""
     return Formula(
         name=name,
@@ -250,6 +269,7 @@ def _apparent(name: str, purpose: str, written: str, valid: str, example: Exampl
         reference="three-phase power" if "sqrt" in written else "single-phase power",
         derivation=_DERIVATION,
         example=example,
+        published=published,
     )
 
 
@@ -259,6 +279,7 @@ APPARENT_POWER_OF_CURRENT = _apparent(
     "sqrt(3)*U_r*I_a",
     _BALANCED,
     Example({"U_r": "400 V", "I_a": "20 A"}, "13.86 kVA"),
+    "Electrical Engineering Portal, transformer size and motor starting",
 )
 NEUTRAL_APPARENT_POWER_OF_CURRENT = _apparent(
     "neutral_apparent_power_of_current",
@@ -266,6 +287,7 @@ NEUTRAL_APPARENT_POWER_OF_CURRENT = _apparent(
     "U_rN*I_a",
     _SINGLE,
     Example({"U_rN": "230 V", "I_a": "16 A"}, "3.68 kVA"),
+    "Mehta and Mehta, Principles of Power System",
 )
 TWO_LINE_APPARENT_POWER_OF_CURRENT = _apparent(
     "two_line_apparent_power_of_current",

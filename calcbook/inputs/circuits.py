@@ -41,7 +41,7 @@ class Circuits:
     """The circuits of the file; `columns` by tag, None where a row has faults; `unused` columns that hold something."""
 
     found: list[Circuit] = field(default_factory=list)
-    columns: dict[str, set[str] | None] = field(default_factory=dict)
+    columns: dict[str, Collection[str] | None] = field(default_factory=dict)
     unused: set[str] = field(default_factory=set)
 
 
@@ -74,7 +74,7 @@ def _take(row: Row, around: Surroundings, circuits: Circuits) -> None:
         return
     circuit = _circuit(row, around)
     circuits.found.append(circuit)
-    circuits.columns[tag] = {"tag", "description", *circuit.data}
+    circuits.columns[tag] = circuit.data.keys()
 
 
 def _circuit(row: Row, around: Surroundings) -> Circuit:

@@ -21,6 +21,10 @@ class FaultList:
             self._faults.append(Fault("", "", f"more than {MOST_FAULTS} faults; the rest was not read"))
             self.raise_if_any()
 
+    def any_in(self, file: str) -> bool:
+        """Whether a file has a fault so far."""
+        return any(fault.file == file for fault in self._faults)
+
     def raise_if_any(self) -> None:
         """Raise all faults in one InputFaults, each once."""
         if self._faults:

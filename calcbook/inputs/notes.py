@@ -2,19 +2,21 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Set
+from collections.abc import Collection, Mapping
 from dataclasses import dataclass, replace
 from typing import cast
 
 from calcbook.inputs.faults import FaultList
 from calcbook.inputs.fields import fields_of
-from calcbook.inputs.rows import Row, read_rows, unknown_name
+from calcbook.inputs.heads import unknown_name
+from calcbook.inputs.rows import Row, read_rows
 from calcbook.inputs.settings import TAGGED
 from calcbook.inputs.text import nearest_name, shown
 from calcbook.records.project import Origin, Status
 
 FILE = "notes.csv"
 EVERY = "*"
+_NEVER_EMPTY = ("tag", "description")
 _NOTED = ("status", "document", "revision", "page", "remark")
 
 
@@ -61,7 +63,7 @@ class Notes:
         note = self._notes.get((tag, column)) or self._notes.get((EVERY, column))
         return note.on(origin) if note else origin
 
-    def report_unknown(self, known: Mapping[str, Set[str] | None]) -> None:
+    def report_unknown(self, known: Mapping[str, Collection[str] | None]) -> None:
         """Report notes on what the inputs do not hold.
 
         Parameters: `known` maps each tag to the columns that have a value, or to None where that tag has faults.
@@ -70,15 +72,21 @@ class Notes:
             if note.tag != EVERY and note.tag not in known:
                 note.row.fault("tag", f"{shown(note.tag)} is no tag of the inputs; {nearest_name(note.tag, known)}")
                 continue
-            place = note.tag.split(".")[0] if note.tag == "basis" or note.tag.startswith(TAGGED) else "circuits"
             if note.column == EVERY:
                 continue
+            place = _place_of(note.tag)
             if note.column not in fields_of(place):
                 note.row.fault("column", unknown_name(place, note.column))
                 continue
             columns = known.get(note.tag)
-            if columns is not None and note.column not in columns:
+            if columns is not None and note.column not in {*columns, *_NEVER_EMPTY}:
                 note.row.fault("column", f"{note.tag} has no {note.column}: the note speaks of nothing")
+
+
+def _place_of(tag: str) -> str:
+    """The place whose fields a tag has: "basis", "boards" of "boards.MB", else circuits."""
+    place, dot, _ = tag.partition(".")
+    return place if tag == "basis" or (dot and place in TAGGED) else "circuits"
 
 
 def read_notes(text: str | None, decimal: str, faults: FaultList) -> Notes:

@@ -45,7 +45,9 @@ def read_project(folder: Path) -> Project:
         around = Surroundings(data.get("basis", {}), names, noted, said.readable)
         found = read_circuits(table, said.decimal(circuits.FILE), around, faults)
         taken.report_unknown(found.columns)
-        noted.report_unknown({**found.columns, **{tag: set(values) for tag, values in data.items()}})
+        if said.readable:
+            sound = not faults.any_in(settings.FILE)
+            noted.report_unknown(found.columns | {tag: values.keys() if sound else None for tag, values in data.items()})
     _report_references(said, found, faults)
     faults.raise_if_any()
     return Project(

@@ -1,56 +1,28 @@
-"""Rows of a CSV file as values by column: heads with units, needed columns, cells read by the rules of their field."""
+"""Rows of a CSV file as values by column: each cell read by the rules of its field, every fault reported."""
 
 from __future__ import annotations
 
-import re
 from collections.abc import Iterator
 
-from calcbook.errors import QuantityFault, nearest
 from calcbook.inputs.faults import FaultList
-from calcbook.inputs.fields import Field, fields_of
+from calcbook.inputs.heads import Heads, read_heads
 from calcbook.inputs.table import Line, read_lines
-from calcbook.inputs.text import shown, wrong_text
-from calcbook.inputs.value import Value, has_decimal_comma, number_in, read_value
-from calcbook.records.quantity import check_unit
+from calcbook.inputs.text import shown
+from calcbook.inputs.value import Value, number_in
 
-_HEAD = re.compile(r"([^\[\]]*?)\s*(?:\[\s*([^\[\]]*?)\s*\])?")
-
-DECLARE_COMMAS = ', or say in inputs.toml that the whole file has decimal commas: [files."NAME.csv"] decimal = ","'
-
-
-class Column:
-    """One column of the file: its field, its head as written and the unit in its brackets."""
-
-    def __init__(self, field: Field, head: str, unit: str | None, decimal: str) -> None:
-        """A column of a file whose decimal mark is `decimal`."""
-        self.field = field
-        self.head = head
-        self._unit = unit
-        self._decimal = decimal
-        self._read: dict[str, Value | str] = {}
-
-    def read(self, cell: str) -> Value | str:
-        """The value of a cell, or what is wrong with it; equal cells of a column are read once."""
-        value = self._read.get(cell)
-        if value is None:
-            value = read_value(self.field, cell, self._unit, self._decimal)
-            if isinstance(value, str) and self._decimal == "." and has_decimal_comma(cell):
-                value += DECLARE_COMMAS
-            if self.field.holds not in {"tag", "text"}:
-                self._read[cell] = value
-        return value
+MOST_ROWS = 100_000
 
 
 class Row:
     """One row: its valid values by column name, and the names of the columns in which a fault was already reported."""
 
-    def __init__(self, file: str, number: int, heads: dict[str, str], faults: FaultList) -> None:
-        """An empty row; `heads` are the heads as written by column name."""
+    def __init__(self, file: str, number: int, heads: Heads, faults: FaultList) -> None:
+        """An empty row; needed columns that the file does not have count as reported."""
         self.values: dict[str, Value] = {}
-        self.wrong: set[str] = set()
+        self.wrong: set[str] = set(heads.absent)
         self._file = file
         self._number = number
-        self._heads = heads
+        self._heads = heads.written
         self._faults = faults
 
     @property
@@ -80,111 +52,45 @@ class Row:
 
 
 def read_rows(file: str, place: str, text: str, decimal: str, faults: FaultList) -> Iterator[Row]:
-    """The rows of a CSV text whose columns are the fields of `place`; every fault of heads and cells is reported."""
+    """The rows of a CSV text with a decimal mark, whose columns are the fields of `place`; faults are reported."""
     lines = read_lines(file, text, faults)
     first = next(lines, None)
     if first is None:
         faults.add(file, "", "is empty; its first row holds the heads of its columns")
         return
-    columns = [_column(head, place, decimal) for head in first.cells]
-    _report_heads(file, place, first, columns, faults)
-    known = [column for column in columns if isinstance(column, Column)]
-    heads = {column.field.name: column.head for column in known}
-    missing = {name for name in fields_of(place) if name not in heads}
-    for line in lines:
+    heads = read_heads(file, place, first, faults)
+    for count, line in enumerate(lines, start=1):
+        if count > MOST_ROWS:
+            faults.add(file, f"row {line.number}", f"more than {MOST_ROWS} rows; the rest was not read")
+            return
         row = Row(file, line.number, heads, faults)
-        row.wrong.update(name for name in missing if fields_of(place)[name].needed)
-        _fill(row, line, columns)
+        surplus = [cell for cell in line.cells[len(heads.columns) :] if cell.strip()]
+        if surplus:
+            _refuse_surplus(row, line, heads, surplus[-1])
+        _read_cells(row, line, heads, file, decimal)
         yield row
 
 
-def unknown_name(place: str, name: str) -> str:
-    """The sentence that refuses a name which is not a field of `place`, with the nearest one."""
-    if place == "circuits" and name.startswith("adopted_"):
-        return f"{shown(name)}: adopted values stand in adopted.csv (tag, line, value, reason, by, date)"
-    return f"{shown(name)} is not known here; {nearest(name[:60], fields_of(place))}"
+def _refuse_surplus(row: Row, line: Line, heads: Heads, last: str) -> None:
+    """Report a row with too many cells, once: what its cells hold would only be reported in the wrong columns."""
+    hint = "a comma within a number or a text splits a cell, unless the cell stands in quotation marks"
+    row.fault("", f"{len(line.cells)} cells under {len(heads.columns)} heads, the last is {shown(last)}; {hint}")
+    row.wrong.update(heads.written)
 
 
-def _column(head: str, place: str, decimal: str) -> Column | str:
-    """The column of a head; else what is wrong with the head, "" for an empty one."""
-    wrong = wrong_text(head)
-    if wrong:
-        return wrong
-    match = _HEAD.fullmatch(head.strip())
-    if not match:
-        return f"{shown(head)} is not a head; write a name and, in brackets, its unit: length [m]"
-    name, unit = match[1], match[2]
-    if not name and unit is None:
-        return ""
-    field = fields_of(place).get(name)
-    if field is None:
-        return unknown_name(place, name)
-    if unit is None:
-        return Column(field, head.strip(), None, decimal)
-    return _column_with_unit(field, head.strip(), "1" if unit == "-" else unit, decimal)
-
-
-def _column_with_unit(field: Field, head: str, unit: str, decimal: str) -> Column | str:
-    if field.holds != "quantity":
-        return f"{shown(head)}: {field.name} has no unit; write the head without brackets"
-    wrong = ""
-    for kind in field.kinds:
-        try:
-            return Column(field, head, check_unit(unit, kind), decimal)
-        except QuantityFault as fault:
-            wrong = fault.message
-    return wrong
-
-
-def _report_heads(file: str, place: str, line: Line, columns: list[Column | str], faults: FaultList) -> None:
-    seen: dict[str, str] = {}
-    for number, column in enumerate(columns, start=1):
-        if isinstance(column, str):
-            if column:
-                faults.add(file, f"row {line.number}, column {number}", column)
-        elif column.field.name in seen:
-            first = seen[column.field.name]
-            faults.add(file, f"row {line.number}, {column.head}", f"the column stands twice, first as {shown(first)}")
-        else:
-            seen[column.field.name] = column.head
-    for name, field in fields_of(place).items():
-        if field.needed and name not in seen and not _meant(name, columns):
-            faults.add(file, f"row {line.number}", f'the column "{name}" is missing')
-
-
-def _meant(name: str, columns: list[Column | str]) -> bool:
-    """Whether a refused head already offers this column: then it is not reported as missing too."""
-    return any(isinstance(column, str) and f'"{name}"?' in column for column in columns)
-
-
-def _fill(row: Row, line: Line, columns: list[Column | str]) -> None:
-    surplus = [cell for cell in line.cells[len(columns) :] if cell.strip()]
-    if surplus:
-        row.fault("", _too_many(line, len(columns), surplus))
-        row.wrong.update(column.field.name for column in columns if isinstance(column, Column))
-        _read_cell(row, line, columns, only="tag")
-        return
-    _read_cell(row, line, columns)
-    for column in columns:
-        if isinstance(column, Column) and column.field.needed and row.lacks(column.field.name):
-            row.fault(column.field.name, "is empty; it is needed in every row")
-
-
-def _read_cell(row: Row, line: Line, columns: list[Column | str], only: str = "") -> None:
-    for column, cell in zip(columns, line.cells, strict=False):
-        if not cell or cell.isspace() or (only and (isinstance(column, str) or column.field.name != only)):
+def _read_cells(row: Row, line: Line, heads: Heads, file: str, decimal: str) -> None:
+    for number, (column, cell) in enumerate(zip(heads.columns, line.cells, strict=False)):
+        if not cell or cell.isspace():
             continue
-        if isinstance(column, str):
-            if not column:
+        if column is None:
+            if number in heads.empty:
                 row.fault("", f"{shown(cell)} stands in a column without a head")
-            continue
-        value = column.read(cell)
-        if isinstance(value, str):
-            row.fault(column.field.name, value)
-        else:
-            row.values[column.field.name] = value
-
-
-def _too_many(line: Line, heads: int, surplus: list[str]) -> str:
-    hint = "a decimal comma or a comma in a text splits a cell unless the cell stands in quotation marks"
-    return f"{len(line.cells)} cells under {heads} heads, {shown(surplus[-1])} is the last; {hint}"
+        elif column.name == "tag" or column.name not in row.wrong:
+            value = column.read(cell, file, decimal)
+            if isinstance(value, Value):
+                row.values[column.name] = value
+            else:
+                row.fault(column.name, value)
+    if not heads.needed <= row.values.keys():
+        for name in (name for name in heads.written if name in heads.needed and row.lacks(name)):
+            row.fault(name, "is empty; it is needed in every row")

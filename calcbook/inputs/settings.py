@@ -10,8 +10,8 @@ from dataclasses import dataclass, field
 from calcbook.errors import nearest
 from calcbook.inputs.faults import FaultList
 from calcbook.inputs.fields import Field, fields_of
+from calcbook.inputs.heads import unknown_name
 from calcbook.inputs.items import item_in_words, read_item
-from calcbook.inputs.rows import unknown_name
 from calcbook.inputs.text import shown, wrong_tag, wrong_text
 from calcbook.inputs.value import Value, number_in
 from calcbook.records.project import SignOff, TitleBlock

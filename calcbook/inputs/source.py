@@ -7,7 +7,8 @@ from pathlib import Path
 
 from calcbook.inputs.faults import FaultList
 
-LARGEST_FILE = 64 * 2**20
+#: bytes, by the ending of the name; what is larger is no input written for a project
+LARGEST = {".toml": 2**20, ".csv": 64 * 2**20}
 
 
 def read_source(folder: Path, name: str, faults: FaultList, *, needed: bool) -> str | None:
@@ -16,8 +17,8 @@ def read_source(folder: Path, name: str, faults: FaultList, *, needed: bool) -> 
     if not needed and not path.exists():
         return None
     try:
-        if path.stat().st_size > LARGEST_FILE:
-            faults.add(name, "", f"has {path.stat().st_size} bytes; allowed are {LARGEST_FILE}")
+        if path.stat().st_size > LARGEST[path.suffix]:
+            faults.add(name, "", f"has {path.stat().st_size} bytes; allowed are {LARGEST[path.suffix]}")
             return None
         data = path.read_bytes()
     except FileNotFoundError:

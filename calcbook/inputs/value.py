@@ -62,7 +62,7 @@ def number_in(quantity: Quantity, unit: str) -> float:
     """The number of a quantity in another unit of the same dimension."""
     if quantity.unit == unit:
         return quantity.number
-    from calcbook.records.dimension import factor  # noqa: PLC0415 - the unit library takes 0.3 s to load; rarely needed
+    from calcbook.records.dimension import factor
 
     return quantity.number * factor(quantity.unit) / factor(unit)
 

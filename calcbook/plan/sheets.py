@@ -8,7 +8,8 @@ from calcbook.plan.parameters import parameters_of
 from calcbook.records.project import Adopted, Circuit, Plan, Project, SheetPlan
 from calcbook.records.quantity import Quantity
 
-SUBJECTS = ("three-phase-power", "cable-current")
+#: subject of a template and of its derivation -> title of the derivation sheet
+SUBJECTS = {"three-phase-power": "Derivation of three-phase power", "cable-current": "Derivation of cable current"}
 
 
 def make_plan(project: Project) -> Plan:
@@ -17,7 +18,7 @@ def make_plan(project: Project) -> Plan:
     Parameters: `project` as read. Result: the sheets in the order of the register.
     """
     circuits = tuple(_circuit_sheet(circuit, project) for circuit in project.circuits)
-    return Plan(circuits + tuple(_derivation_sheet(subject) for subject in SUBJECTS))
+    return Plan(circuits + tuple(_derivation_sheet(subject, title) for subject, title in SUBJECTS.items()))
 
 
 def spelled(quantity: Quantity) -> str:
@@ -34,14 +35,15 @@ def _circuit_sheet(circuit: Circuit, project: Project) -> SheetPlan:
         "origins": {name: asdict(datum.origin) for name, datum in parameters.items() if datum},
         "adopted": {adopted.line: _adopted(adopted) for adopted in circuit.adopted},
         "signed_off": {table: asdict(sign_off) for table, sign_off in project.signed_off.items()},
+        "editions": dict(project.editions),
     }
     texts = {name: datum.text if datum else "" for name, datum in parameters.items()}
-    return SheetPlan(circuit.tag, circuit.description, SUBJECTS, texts, given)
+    return SheetPlan(circuit.tag, circuit.description, tuple(SUBJECTS), texts, given)
 
 
-def _derivation_sheet(subject: str) -> SheetPlan:
-    number, title = f"D-{subject}", f"Derivations: {subject.replace('-', ' ')}"
-    given: dict[str, object] = {"sheet": number, "title": title, "origins": {}, "adopted": {}, "signed_off": {}}
+def _derivation_sheet(subject: str, title: str) -> SheetPlan:
+    number = f"D-{subject}"
+    given: dict[str, object] = {"sheet": number, "title": title}
     return SheetPlan(number, title, ("derivations",), {"subject": subject}, given)
 
 

@@ -65,18 +65,21 @@ def _open_items(lines: Sequence[Line]) -> list[str]:
 
 
 def _cautions(lines: Sequence[Line]) -> list[str]:
-    """Tables not compared with a licensed copy, and adopted values, once each."""
-    cautions = []
+    """Adopted values, tables of another edition, and tables not compared with a licensed copy, each once."""
+    cautions, not_compared = [], []
     for line in lines:
-        if isinstance(line, TableLine) and line.citation.signed_off is None:
-            source = line.citation
-            cautions.append(
-                f"{source.standard}:{source.edition}, {source.table}: not yet compared with a licensed copy"
-            )
+        if isinstance(line, TableLine):
+            source = f"{line.citation.standard}:{line.citation.edition}, {line.citation.table}"
+            if line.citation.signed_off is None:
+                not_compared.append(source)
+            if "the basis states" in line.citation.remark:
+                cautions.append(f"{source}: {line.citation.remark}")
         if isinstance(line, StepLine) and line.adopted:
             adopted = line.adopted
             cautions.append(
                 f"{line.description}: {line.text} adopted in place of {line.calculated_text} "
                 f"({adopted.reason}; {adopted.by}, {adopted.date})"
             )
+    if not_compared:
+        cautions.append(f"not yet compared with a licensed copy: {'; '.join(dict.fromkeys(not_compared))}")
     return list(dict.fromkeys(cautions))

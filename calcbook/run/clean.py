@@ -36,7 +36,7 @@ def clean(notebook: nbformat.NotebookNode) -> nbformat.NotebookNode:
 
 def canonical_text(notebook: nbformat.NotebookNode) -> str:
     """A notebook as the text of its file: keys sorted, one newline at the end."""
-    return str(nbformat.writes(notebook)).rstrip("\n") + "\n"
+    return str(nbformat.writes(nbformat.from_dict(notebook))).rstrip("\n") + "\n"
 
 
 def _clean_cell(cell: nbformat.NotebookNode) -> None:

@@ -47,4 +47,4 @@ def _is_import(line: str) -> bool:
 def merge_setups(templates: Sequence[Template]) -> str:
     """The set-up of a workbook: every import line of its templates once, then the sheet of the first opened."""
     imports = {line for template in templates for line in read_imports(template)}
-    return "\n".join([*sorted(imports), opening_line(templates[0].name)])
+    return "\n".join([*sorted(imports), "", opening_line(templates[0].name)])

@@ -72,8 +72,7 @@ def _be_the_child(cells: list[dict[str, Any]], writing: int) -> None:
     code = 1
     try:
         nothing = os.open(os.devnull, os.O_RDWR)
-        for descriptor in (_FIRST_CELL = "from IPython.display import display\ndisplay({'text/plain': ''}, raw=True)\n1"
-_STDIN, _STDOUT, _STDERR):
+        for descriptor in (_STDIN, _STDOUT, _STDERR):
             os.dup2(nothing, descriptor)
         random.seed()
         run_cells(cells, lambda run: send(writing, asdict(run)))

@@ -7,6 +7,7 @@ import math
 from typing import Any
 
 from calcbook.publish.sheet_view import Context
+from calcbook.records.dimension import coherent_number
 from calcbook.records.line import (
     Argument,
     Binding,
@@ -28,7 +29,6 @@ from calcbook.records.printed import print_calculated, print_given
 from calcbook.records.project import Adopted, Origin, SignOff, Status, TitleBlock
 from calcbook.records.quantity import Quantity
 from calcbook.records.result import Failure, SheetResult
-from calcbook.records.dimension import coherent_number
 from calcbook.records.trace import LINE_MIME, canonical_json, line_to_json, trace_of_notebook
 
 BLOCK = TitleBlock(
@@ -63,7 +63,7 @@ def datum(sheet: str, name: str, number: float, status: Status = "confirmed", **
         si=coherent_number(value),
         text=print_given(value),
         parameter=column,
-        origin=Origin(status=status, **place),  # type: ignore[arg-type]
+        origin=Origin(status=status, **place),
     )
 
 
@@ -75,7 +75,7 @@ def choice(sheet: str, name: str, text: str, description: str) -> ChoiceLine:
 
 
 def table_value(
-    sheet: str, name: str, number: float, table: str, row: str, column: str, *, arguments: tuple[Argument, ...] = ()
+    sheet: str, name: str, number: float, table: str, cell: tuple[str, str], *, arguments: tuple[Argument, ...] = ()
 ) -> TableLine:
     value = quantity(name, number)
     signed = SignOff("AB", "2026-02-01", "licensed copy 7") if table == "B.52.14" else None
@@ -94,8 +94,8 @@ def table_value(
             edition="2009",
             table=table,
             title="current-carrying capacities",
-            row=row,
-            column=column,
+            row=cell[0],
+            column=cell[1],
             status="from memory of the standard",
             signed_off=signed,
             remark="less favourable of two rows" if table == "B.52.17" else "",
@@ -117,10 +117,7 @@ def step(
         text=print_calculated(value),
         formula=formula or f"cable.{name}",
         written=written,
-        bindings=tuple(
-            Binding(symbol=symbol, rests_on=(f"{sheet}/{CURRENT}/{symbol}",), texts=(text,))
-            for symbol, text in texts.items()
-        ),
+        bindings=tuple(Binding(symbol=symbol, rests_on=(symbol,), texts=(text,)) for symbol, text in texts.items()),
         reference=reference,
         second=coherent_number(value),
         calculated=value,
@@ -128,15 +125,17 @@ def step(
     )
 
 
-def criterion(sheet: str, name: str, left: str, right: str, texts: tuple[str, str], utilisation: float) -> InequalityLine:
+def criterion(
+    sheet: str, name: str, sides: tuple[str, str], texts: tuple[str, str], utilisation: float
+) -> InequalityLine:
     return InequalityLine(
         sheet=sheet,
         template=CURRENT,
         name=name,
         description={"setting": "setting not below the design current"}.get(name, "setting not above the capacity"),
         operator="<=",
-        left=left,
-        right=right,
+        left=sides[0],
+        right=sides[1],
         left_text=texts[0],
         right_text=texts[1],
         utilisation=utilisation,
@@ -148,11 +147,11 @@ def criterion(sheet: str, name: str, left: str, right: str, texts: tuple[str, st
 
 
 def hoist_lines(sheet: str = "C-014") -> list[Line]:
-    adopted = Adopted("I_B", quantity("I_B", 82.0), "allowance for the tail winch, letter 12 of the maker", "AB", "2026-03-02")
-    design = step(sheet, "I_B", 78.4, "I_L", {"I_L": "78.4 A"}, reference="IEC 60364-4-43:2023, 433.1")
-    design = StepLine(
-        **{**design.__dict__, "value": adopted.value, "si": 82.0, "text": "82.0 A", "adopted": adopted}
+    adopted = Adopted(
+        "I_B", quantity("I_B", 82.0), "allowance for the tail winch, letter 12 of the maker", "AB", "2026-03-02"
     )
+    design = step(sheet, "I_B", 78.4, "I_L", {"I_L": "78.4 A"}, reference="IEC 60364-4-43:2023, 433.1")
+    design = StepLine(**{**design.__dict__, "value": adopted.value, "si": 82.0, "text": "82.0 A", "adopted": adopted})
     capacity = 119.0 * 0.91 * 0.88
     return [
         datum(sheet, "P_2", 45.0, document="TQ-E-101", revision="C", page="2"),
@@ -188,17 +187,16 @@ def hoist_lines(sheet: str = "C-014") -> list[Line]:
             "I_t",
             119.0,
             "B.52.12",
-            "25 mm²",
-            "E, XLPE, copper, 3 loaded",
+            ("25 mm²", "E, XLPE, copper, 3 loaded"),
             arguments=(
-                Argument(name="method", rests_on=f"{sheet}/{CURRENT}/method", text="E"),
-                Argument(name="insulation", rests_on=f"{sheet}/{CURRENT}/insulation", text="XLPE90"),
-                Argument(name="size", rests_on=f"{sheet}/{CURRENT}/size", text="25\N{NO-BREAK SPACE}mm²"),
+                Argument(name="method", rests_on="method", text="E"),
+                Argument(name="insulation", rests_on="insulation", text="XLPE90"),
+                Argument(name="size", rests_on="size", text="25\N{NO-BREAK SPACE}mm²"),
                 Argument(name="loaded", rests_on="", text="3"),
             ),
         ),
-        table_value(sheet, "C_a", 0.91, "B.52.14", "40 °C", "XLPE"),
-        table_value(sheet, "C_g", 0.88, "B.52.17", "3 circuits", "single layer on tray"),
+        table_value(sheet, "C_a", 0.91, "B.52.14", ("40 °C", "XLPE")),
+        table_value(sheet, "C_g", 0.88, "B.52.17", ("3 circuits", "single layer on tray")),
         step(
             sheet,
             "I_Z",
@@ -221,9 +219,11 @@ def hoist_lines(sheet: str = "C-014") -> list[Line]:
             },
         ),
         datum(sheet, "theta_ref", 30.0),
-        table_value(sheet, "theta_max", 90.0, "52.1", "XLPE", "greatest temperature"),
-        criterion(sheet, "setting", "I_B", "I_r", ("82.0\N{NO-BREAK SPACE}A", "85\N{NO-BREAK SPACE}A"), 82 / 85),
-        criterion(sheet, "capacity", "I_r", "I_Z", ("85\N{NO-BREAK SPACE}A", "95.3\N{NO-BREAK SPACE}A"), 85 / capacity),
+        table_value(sheet, "theta_max", 90.0, "52.1", ("XLPE", "greatest temperature")),
+        criterion(sheet, "setting", ("I_B", "I_r"), ("82.0\N{NO-BREAK SPACE}A", "85\N{NO-BREAK SPACE}A"), 82 / 85),
+        criterion(
+            sheet, "capacity", ("I_r", "I_Z"), ("85\N{NO-BREAK SPACE}A", "95.3\N{NO-BREAK SPACE}A"), 85 / capacity
+        ),
         RuleLine(
             sheet=sheet,
             template=CURRENT,
@@ -260,26 +260,26 @@ def hoist_lines(sheet: str = "C-014") -> list[Line]:
 
 
 def derivation_lines(sheet: str = "D-three-phase") -> list[Line]:
-    def line(name: str, left: str, right: str, standing: Any, reason: str, proof: str = "", formula: str = "") -> Line:
+    def line(name: str, sides: tuple[str, str], reason: str, proof: str = "", formula: str = "") -> Line:
         return DerivationLine(
             sheet=sheet,
             template="derivations",
             name=name,
             description="",
-            left=left,
-            right=right,
-            standing=standing,
+            left=sides[0],
+            right=sides[1],
+            standing="proven" if proof else "premise",
             reason=reason,
             proof=proof,
             formula=formula,
         )
 
     return [
-        line("voltage-1", "u_1", "sqrt(2)*U_ph*cos(omega*t)", "premise", "sinusoidal phase voltage"),
-        line("current-1", "i_1", "sqrt(2)*I_ph*cos(omega*t - phi)", "premise", "current lags by the phase angle"),
-        line("sum", "u_1*i_1 + u_2*i_2 + u_3*i_3", "3*U_ph*I_ph*cos_phi", "proven", "sum of the phases", "difference"),
-        line("mean", "P", "integral(p, t, 0, T)/T", "premise", "mean over a period"),
-        line("line-current", "I_L", "P_2/(sqrt(3)*U_r*eta*cos_phi)", "proven", "solved for the current",
+        line("voltage-1", ("u_1", "sqrt(2)*U_ph*cos(omega*t)"), "sinusoidal phase voltage"),
+        line("current-1", ("i_1", "sqrt(2)*I_ph*cos(omega*t - phi)"), "current lags by the phase angle"),
+        line("sum", ("u_1*i_1 + u_2*i_2 + u_3*i_3", "3*U_ph*I_ph*cos_phi"), "sum of the phases", "difference 0"),
+        line("mean", ("P", "integral(p, t, 0, T)/T"), "mean over a period"),
+        line("line-current", ("I_L", "P_2/(sqrt(3)*U_r*eta*cos_phi)"), "solved for the current",
              "the difference of both sides simplifies to zero", "three_phase.motor_current"),
     ]  # fmt: skip
 

@@ -34,12 +34,24 @@ def test_headings_open_sections_and_the_text_before_the_data_stays_before_it(vie
 
 def test_every_datum_of_a_section_stands_in_its_table_in_the_order_of_the_workbook(view: SheetView) -> None:
     labels = [row.label or row.description for row in view.sections[1].data]
-    assert labels == ["method of installation", "insulation of the conductor", "size", "theta_a", "I_r", "n", "theta_ref"]
+    assert labels == [
+        "method of installation",
+        "insulation of the conductor",
+        "size",
+        "theta_a",
+        "I_r",
+        "n",
+        "theta_ref",
+    ]
 
 
 def test_a_datum_shows_place_document_and_status(view: SheetView) -> None:
     row = view.sections[0].data[0]
-    assert (row.place, row.document, row.status) == ("circuits.csv, C-014, shaft_power", "TQ-E-101, rev. C, p. 2", "confirmed")
+    assert (row.place, row.document, row.status) == (
+        "circuits.csv, C-014, shaft_power",
+        "TQ-E-101, rev. C, p. 2",
+        "confirmed",
+    )
     assert row.value == Span("45\N{NO-BREAK SPACE}kW", "inputs.html#circuits.csv/C-014/shaft_power")
 
 
@@ -60,7 +72,9 @@ def test_an_adopted_step_shows_both_values_and_why(view: SheetView) -> None:
 
 
 def test_a_step_names_where_its_formula_is_derived(view: SheetView) -> None:
-    assert rows_of(view)["I_L"].reference == ((Span("derived: "), Span("D-three-phase", "D-three-phase.html#line-current")),)
+    assert rows_of(view)["I_L"].reference == (
+        (Span("derived: "), Span("D-three-phase", "D-three-phase.html#line-current")),
+    )
 
 
 def test_a_table_value_names_its_cell_and_whether_it_was_compared(view: SheetView) -> None:
@@ -94,7 +108,9 @@ def test_alone_a_sheet_is_a_draft_without_links_to_other_pages() -> None:
     view = sheet_view(hoist(), Context())
     assert view.block.state == "draft"
     assert {row.value.link for section in view.sections for row in section.data} == {""}
-    spans = [span for row in rows_of(view).values() for line in (*row.result, *row.reference, *row.notes) for span in line]
+    spans = [
+        span for row in rows_of(view).values() for line in (*row.result, *row.reference, *row.notes) for span in line
+    ]
     assert all(not span.link or span.link.startswith("#") for span in spans)
 
 
