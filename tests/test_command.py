@@ -61,7 +61,12 @@ def test_same_inputs_same_bytes(good: tuple[Path, subprocess.CompletedProcess[st
 def test_failing_example_says_which_criterion_and_why(tmp_path: Path) -> None:
     done = calcbook("run", str(copy_of("tern_quay_failing", tmp_path)))
     assert done.returncode == 1, done.stdout + done.stderr
-    for sides in ("I_B <= I_", "I_r <= I_Z", "I_2 <= I_2_max", "a device protects the circuit against overload; found aM"):
+    for sides in (
+        "I_B <= I_",
+        "I_r <= I_Z",
+        "I_2 <= I_2_max",
+        "a device protects the circuit against overload; found aM",
+    ):
         assert sides in done.stdout
 
 

@@ -5,16 +5,17 @@ from __future__ import annotations
 from dataclasses import replace
 from pathlib import Path
 
+from calcbook.errors import Fault, InputFaults
 from calcbook.inputs import adopted, circuits, notes, settings
+from calcbook.inputs.adopted import AdoptedValues, read_adopted
 from calcbook.inputs.circuits import Circuits, Surroundings, read_circuits
 from calcbook.inputs.faults import FaultList
 from calcbook.inputs.fields import fields_of
 from calcbook.inputs.notes import Notes, read_notes
-from calcbook.inputs.refusals import REFUSED_FILES, refused_basis
+from calcbook.inputs.refusals import report_refused_basis, report_refused_files
 from calcbook.inputs.settings import TAGGED, Settings, read_settings
 from calcbook.inputs.source import read_source
 from calcbook.inputs.text import nearest_name, shown
-from calcbook.inputs.value import Value
 from calcbook.records.project import Board, Datum, Project
 
 
@@ -24,31 +25,18 @@ def read_project(folder: Path) -> Project:
     Parameters: `folder` with inputs.toml, circuits.csv and, where wanted, notes.csv and adopted.csv.
     Result: the Project. Raises InputFaults with every fault found; nothing is written.
     """
+    if not folder.is_dir():
+        raise InputFaults((Fault("", str(folder), "is not a folder; a project is a folder with inputs.toml in it"),))
     faults = FaultList()
-    for name, sentence in REFUSED_FILES.items():
-        if (folder / name).exists():
-            faults.add(name, "", sentence)
+    report_refused_files(folder, faults)
     toml = read_source(folder, settings.FILE, faults, needed=True)
     said = (read_settings(toml, faults) if toml is not None else None) or Settings(readable=False)
-    _report_basis(said, faults)
-    texts = {
-        name: read_source(folder, name, faults, needed=name == circuits.FILE)
-        for name in (circuits.FILE, notes.FILE, adopted.FILE)
-    }
-    noted = read_notes(texts[notes.FILE], said.decimal(notes.FILE), faults)
-    taken = adopted.read_adopted(texts[adopted.FILE], said.decimal(adopted.FILE), faults)
-    data = {tag: _data(tag, values, noted) for tag, values in said.values.items()}
-    found = Circuits()
-    table = texts[circuits.FILE]
-    if table is not None:
-        names = {kind: said.names_of(kind) for kind in TAGGED}
-        around = Surroundings(data.get("basis", {}), names, noted, said.readable)
-        found = read_circuits(table, said.decimal(circuits.FILE), around, faults)
-        taken.report_unknown(found.columns)
-        if said.readable:
-            sound = not faults.any_in(settings.FILE)
-            noted.report_unknown(found.columns | {tag: values.keys() if sound else None for tag, values in data.items()})
-    _report_references(said, found, faults)
+    report_refused_basis(said.values.get("basis", {}), faults)
+    noted = read_notes(read_source(folder, notes.FILE, faults, needed=False), said.decimal(notes.FILE), faults)
+    taken = read_adopted(read_source(folder, adopted.FILE, faults, needed=False), said.decimal(adopted.FILE), faults)
+    data = _data(said, noted)
+    found = _circuits(folder, said, data, noted, faults)
+    _report_what_stands_for_nothing(said, found, noted, taken, faults)
     faults.raise_if_any()
     return Project(
         folder=str(folder),
@@ -62,34 +50,49 @@ def read_project(folder: Path) -> Project:
     )
 
 
-def _data(tag: str, values: dict[str, Value], noted: Notes) -> dict[str, Datum]:
+def _data(said: Settings, noted: Notes) -> dict[str, dict[str, Datum]]:
     return {
-        key: Datum(value.text, value.quantity, noted.origin(settings.FILE, tag, key)) for key, value in values.items()
+        tag: {
+            key: Datum(value.text, value.quantity, noted.origin(settings.FILE, tag, key))
+            for key, value in values.items()
+        }
+        for tag, values in said.values.items()
     }
 
 
-def _report_basis(said: Settings, faults: FaultList) -> None:
-    for key, sentence in refused_basis(said.values.get("basis", {})).items():
-        faults.add(settings.FILE, f"[basis], {key}", sentence)
+def _circuits(
+    folder: Path, said: Settings, data: dict[str, dict[str, Datum]], noted: Notes, faults: FaultList
+) -> Circuits:
+    text = read_source(folder, circuits.FILE, faults, needed=True)
+    if text is None:
+        return Circuits()
+    names = {kind: said.names_of(kind) for kind in TAGGED}
+    around = Surroundings(data.get("basis", {}), names, noted, said.readable)
+    return read_circuits(text, said.decimal(circuits.FILE), around, faults)
 
 
-def _report_references(said: Settings, found: Circuits, faults: FaultList) -> None:
-    """Report names in inputs.toml that stand for nothing; circuits are known by now."""
+def _report_what_stands_for_nothing(
+    said: Settings, found: Circuits, noted: Notes, taken: AdoptedValues, faults: FaultList
+) -> None:
+    """Report names that nothing has; where a file could not be read at all, what refers to it is not judged."""
+    if not found.columns or not said.readable:
+        return
+    taken.report_unknown(found.columns)
+    sound = not faults.any_in(settings.FILE)
+    noted.report_unknown(found.columns | {tag: data.keys() if sound else None for tag, data in said.values.items()})
     known = {kind: said.names_of(kind) for kind in TAGGED} | {"circuits": tuple(found.columns)}
     for tag, values in said.values.items():
         for key, value in values.items():
             field = fields_of(tag.split(".")[0])[key]
-            if not field.holds.startswith("reference"):
-                continue
-            valid = [name for kind in field.choices for name in known[kind]]
-            for name in value.text.split(", "):
+            valid = [name for kind in field.choices for name in known.get(kind, ())]
+            for name in value.text.split(", ") if field.holds.startswith("reference") else ():
                 if name not in valid:
                     wrong = f"{shown(name)} is not one of the {' or '.join(field.choices)}; {nearest_name(name, valid)}"
                     faults.add(settings.FILE, f"[{tag}], {key}", wrong)
 
 
 def _unused(folder: Path, said: Settings, found: Circuits) -> tuple[str, ...]:
-    """Accepted keys and columns that hold something and that no subject uses yet."""
+    """Accepted keys, columns and files that hold something and that no subject uses yet."""
     keys = {
         f"{settings.FILE}: {tag.split('.')[0]}{'.*' if '.' in tag else ''}.{key}"
         for tag, values in said.values.items()

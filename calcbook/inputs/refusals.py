@@ -7,7 +7,9 @@ from __future__ import annotations
 
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass
+from pathlib import Path
 
+from calcbook.inputs.faults import FaultList
 from calcbook.inputs.rows import Row
 from calcbook.inputs.value import Value
 
@@ -90,8 +92,15 @@ def report_refusals(row: Row) -> None:
             row.fault(refusal.column, refusal.sentence.format(method=row.text("method"), kind=row.text("kind")))
 
 
-def refused_basis(basis: Mapping[str, Value]) -> dict[str, str]:
-    """Sentences, by key of the basis, for what is not covered yet."""
-    return {
-        key: sentence for (key, word), sentence in REFUSED_BASIS.items() if key in basis and basis[key].text == word
-    }
+def report_refused_basis(basis: Mapping[str, Value], faults: FaultList) -> None:
+    """Report what the basis asks for that is not covered yet."""
+    for (key, word), sentence in REFUSED_BASIS.items():
+        if key in basis and basis[key].text == word:
+            faults.add("inputs.toml", f"[basis], {key}", sentence)
+
+
+def report_refused_files(folder: Path, faults: FaultList) -> None:
+    """Report files in the project's folder that hold what is not covered yet."""
+    for name, sentence in REFUSED_FILES.items():
+        if (folder / name).exists():
+            faults.add(name, "", sentence)

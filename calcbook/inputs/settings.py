@@ -6,13 +6,14 @@ import re
 import tomllib
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass, field
+from functools import cache
 
 from calcbook.errors import nearest
 from calcbook.inputs.faults import FaultList
 from calcbook.inputs.fields import Field, fields_of
 from calcbook.inputs.heads import unknown_name
 from calcbook.inputs.items import item_in_words, read_item
-from calcbook.inputs.text import shown, wrong_tag, wrong_text
+from calcbook.inputs.text import nearest_name, shown, wrong_tag, wrong_text
 from calcbook.inputs.value import Value, number_in
 from calcbook.records.project import SignOff, TitleBlock
 
@@ -67,10 +68,7 @@ def read_settings(text: str, faults: FaultList) -> Settings | None:
             settings.values[f"{kind}.{name}"] = _read_table(kind, f"{kind}.{name}", table, faults)
     if not document.get("boards"):
         faults.add(FILE, "", "no board; a project has at least one, such as [boards.MB]")
-    for name, table in _tables_of("signed_off", document.get("signed_off", {}), faults):
-        values = _read_table("signed_off", f'signed_off."{name}"', table, faults)
-        if len(values) == len(fields_of("signed_off")):
-            settings.signed_off[name] = SignOff(**{key: value.text for key, value in values.items()})
+    settings.signed_off = _read_sign_offs(document.get("signed_off", {}), faults)
     for name, table in _tables_of("files", document.get("files", {}), faults):
         if name not in _CSV_FILES:
             faults.add(FILE, "[files]", f"{shown(name)} is not a file of the inputs; {nearest(name[:60], _CSV_FILES)}")
@@ -161,6 +159,25 @@ def _read_editions(basis: object, faults: FaultList) -> dict[str, str]:
         if wrong:
             faults.add(FILE, "[basis.editions]", wrong)
     return editions
+
+
+def _read_sign_offs(item: object, faults: FaultList) -> dict[str, SignOff]:
+    found = {}
+    for name, table in _tables_of("signed_off", item, faults):
+        values = _read_table("signed_off", f'signed_off."{name}"', table, faults)
+        if name not in _table_titles():
+            message = f"{shown(name)} is not a table of calcbook; {nearest_name(name, _table_titles())}"
+            faults.add(FILE, "[signed_off]", message)
+        if len(values) == len(fields_of("signed_off")):
+            found[name] = SignOff(**{key: value.text for key, value in values.items()})
+    return found
+
+
+@cache
+def _table_titles() -> tuple[str, ...]:
+    from calcbook.reference.table import tables  # loads the unit library; only sign-offs need it
+
+    return tuple(table.title for table in tables().values())
 
 
 def _check_voltages(basis: Mapping[str, Value], faults: FaultList) -> None:

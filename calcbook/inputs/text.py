@@ -13,6 +13,7 @@ LONGEST_TAG = 32
 LONGEST_DESCRIPTION = 120
 LONGEST_TEXT = 200
 _LONGEST_SHOWN = 40
+_LONGEST_COMPARED = 60
 _MOST_COMPARED = 1000
 _MOST_LISTED = 20
 
@@ -77,7 +78,7 @@ def wrong_tag(tag: str) -> str:
 
 def nearest_name(name: str, known: Collection[str]) -> str:
     """Like `nearest`, for names of a project, of which there may be very many."""
-    question = nearest(name[:LONGEST_TAG], islice(known, _MOST_COMPARED))
+    question = nearest(name[:_LONGEST_COMPARED], islice(known, _MOST_COMPARED))
     if question.startswith("did") or len(known) <= _MOST_LISTED:
         return question if known else "there are none"
     return f"none of the {len(known)} is near"

@@ -41,4 +41,6 @@ def on_paper(text: str) -> str:
 
 
 def _breakable(match: re.Match[str]) -> str:
-    return re.sub(r".{12}(?=.)", rf"\g<0>{_BREAK}", match[0])
+    """Breaks after signs that join words, and within what is still too long."""
+    at_signs = re.sub(r"(?<=[_/.,-])(?=\w)", _BREAK, match[0])
+    return re.sub(rf"[^{_BREAK}]{{12}}(?=[^{_BREAK}]{{7}})", rf"\g<0>{_BREAK}", at_signs)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 
@@ -23,6 +24,7 @@ from calcbook.records.line import (
     TableLine,
     Valued,
 )
+from calcbook.records.notation import notation
 from calcbook.records.project import Adopted, Origin
 from calcbook.records.written.tree import parse
 
@@ -51,13 +53,19 @@ def sentence(*texts: str) -> Paragraph:
     return (Span(", ".join(text for text in texts if text)),)
 
 
+def prose(text: str) -> Paragraph:
+    """One of our own sentences: the names of the notation list in it, as I_2, are set as symbols."""
+    parts = re.split(r"\b([A-Za-z]+_\w+)\b", text)
+    return tuple(Span(part, symbol=index % 2 == 1 and part in notation()) for index, part in enumerate(parts) if part)
+
+
 def data_row(line: DatumLine | ChoiceLine, setting: Setting) -> DataRow:
     """A datum or a choice in the compact table."""
     origin = line.origin
     return DataRow(
         anchor=anchors.anchor(line.label),
         label=line.label if isinstance(line, DatumLine) else "",
-        description=line.description,
+        description=prose(line.description),
         value=Span(line.text, setting.outward(anchors.to_datum(origin))),
         place=place(origin),
         document=document(origin),
@@ -104,7 +112,8 @@ def _value(line: Valued, text: str, link: str = "", before: str = "") -> Paragra
 def _table_value(line: TableLine, setting: Setting) -> WorkRow:
     citation = line.citation
     standard = f"{citation.standard}:{citation.edition}" if citation.edition else citation.standard
-    notes = [sentence(f"row {citation.row}", f"column {citation.column}")] if citation.row or citation.column else []
+    cell = [f"{name} {text}" for name, text in (("row", citation.row), ("column", citation.column)) if text]
+    notes = [sentence(*cell)] if cell else []
     if line.arguments:
         notes.append(_arguments(line.arguments))
     if citation.remark:
@@ -113,7 +122,7 @@ def _table_value(line: TableLine, setting: Setting) -> WorkRow:
     return WorkRow(
         anchor=anchors.anchor(line.label),
         reference=(sentence(standard), sentence(numbered(citation.table))),
-        description=line.description,
+        description=prose(line.description),
         equations=(),
         notes=tuple(notes),
         result=(_value(line, line.text, setting.outward(anchors.to_cell(line))),),
@@ -142,7 +151,7 @@ def _brought_forward(line: BroughtForwardLine, setting: Setting) -> WorkRow:
     return WorkRow(
         anchor=anchors.anchor(line.label),
         reference=((Span(f"sheet {sheet}", setting.outward(anchors.to_sheet(sheet))),),),
-        description=line.description,
+        description=prose(line.description),
         equations=(),
         notes=(source,),
         result=(_value(line, line.text, setting.outward(anchors.to_source(line.source))),),
@@ -159,7 +168,7 @@ def _step(line: StepLine, setting: Setting) -> WorkRow:
         equations.append(Equation(None, "=", Formula(node, texts_of(line), links)))
     notes = [_terms(binding.rests_on, binding.texts) for binding in line.bindings if len(binding.rests_on) > 1]
     if line.remark:
-        notes.append(sentence(line.remark))
+        notes.append(prose(line.remark))
     own = anchors.to_line(line.label)
     result = [_value(line, line.calculated_text, own)]
     if line.adopted:
@@ -168,7 +177,7 @@ def _step(line: StepLine, setting: Setting) -> WorkRow:
     return WorkRow(
         anchor=anchors.anchor(line.label),
         reference=_reference_of_step(line, setting),
-        description=line.description,
+        description=prose(line.description),
         equations=tuple(equations),
         notes=tuple(notes),
         result=tuple(result),
@@ -261,15 +270,15 @@ def _criterion(
     result: tuple[Paragraph, ...],
 ) -> WorkRow:
     reference = (sentence(line.reference),) if line.reference else ()
-    return WorkRow(anchors.anchor(line.label), reference, in_words(line), equations, notes, result)
+    return WorkRow(anchors.anchor(line.label), reference, prose(in_words(line)), equations, notes, result)
 
 
 def _derivation(line: DerivationLine) -> WorkRow:
-    notes = [sentence(text) for text in (line.reason, f"proof: {line.proof}" if line.proof else "") if text]
+    notes = [prose(text) for text in (line.reason, f"proof: {line.proof}" if line.proof else "") if text]
     return WorkRow(
         anchor=anchors.anchor(line.label),
-        reference=(sentence(line.formula),) if line.formula else (),
-        description=line.description,
+        reference=(sentence(f"formula: {line.formula.replace('_', ' ')}"),) if line.formula else (),
+        description=prose(line.description),
         equations=(Equation(Formula(parse(line.left)), "=", Formula(parse(line.right))),),
         notes=tuple(notes),
         result=((Span(line.standing),),),

@@ -22,7 +22,6 @@ from calcbook.publish.view import (
     SheetView,
     Span,
     Summary,
-    Text,
     WorkRow,
 )
 from calcbook.records.written import typst as print_typst
@@ -120,21 +119,18 @@ def _summary(summary: Summary) -> Literal:
 
 def _section(section: Section) -> Literal:
     return {
-        "title": section.title,
-        "opening": [_text(text) for text in section.opening],
+        "title": _paragraph(section.title),
+        "level": section.level,
+        "opening": [_paragraph(text) for text in section.opening],
         "data": [_data_row(row) for row in section.data],
-        "work": [_text(row) if isinstance(row, Text) else _work_row(row) for row in section.work],
+        "work": [{"text": _paragraph(row)} if isinstance(row, tuple) else _work_row(row) for row in section.work],
     }
-
-
-def _text(text: Text) -> dict[str, Literal]:
-    return {"text": _paragraph(text.spans), "heading": text.heading}
 
 
 def _data_row(row: DataRow) -> Literal:
     return {
         "symbol": _symbol(row.label) if row.label else "",
-        "description": row.description,
+        "description": _paragraph(row.description),
         "value": row.value.text,
         "place": row.place,
         "document": row.document,
@@ -146,7 +142,7 @@ def _data_row(row: DataRow) -> Literal:
 def _work_row(row: WorkRow) -> dict[str, Literal]:
     return {
         "reference": [_paragraph(line) for line in row.reference],
-        "description": row.description,
+        "description": _paragraph(row.description),
         "aligned": Mathematics(" \\ ".join(map(_aligned, row.equations))) if row.equations else None,
         "lines": [Mathematics(_unaligned(equation)) for equation in row.equations],
         "notes": [_paragraph(line) for line in row.notes],

@@ -10,7 +10,7 @@ from typing import Any
 
 from calcbook.publish import anchors, cautions
 from calcbook.publish.rows import Setting, data_row, found, in_words, sides, utilisation, work_row
-from calcbook.publish.view import CriterionRow, HeadroomRow, Paragraph, Section, SheetView, Span, Summary, Text
+from calcbook.publish.view import CriterionRow, HeadroomRow, Paragraph, Section, SheetView, Span, Summary
 from calcbook.records.line import (
     ChoiceLine,
     ConclusionLine,
@@ -79,26 +79,30 @@ def _text(source: str | list[str]) -> str:
     return source if isinstance(source, str) else "".join(source)
 
 
+@dataclass(frozen=True)
+class _Heading:
+    title: Paragraph
+    level: int
+
+
+_Part = Paragraph | Line
+
+
 def _sections(cells: Sequence[Mapping[str, Any]], setting: Setting) -> Iterator[Section]:
-    title = ""
-    parts: list[Text | Line] = []
+    heading = _Heading((), 1)
+    parts: list[_Part] = []
     for part in _parts(cells):
-        if isinstance(part, _Title):
-            if parts:
-                yield _section(title, parts, setting)
-            title, parts = part.text, []
+        if isinstance(part, _Heading):
+            if parts or heading.title:
+                yield _section(heading, parts, setting)
+            heading, parts = part, []
         else:
             parts.append(part)
-    if parts:
-        yield _section(title, parts, setting)
+    if parts or heading.title:
+        yield _section(heading, parts, setting)
 
 
-@dataclass(frozen=True)
-class _Title:
-    text: str
-
-
-def _parts(cells: Sequence[Mapping[str, Any]]) -> Iterator[_Title | Text | Line]:
+def _parts(cells: Sequence[Mapping[str, Any]]) -> Iterator[_Heading | _Part]:
     for cell in cells:
         if cell["cell_type"] == "markdown":
             yield from _markdown(_text(cell["source"]))
@@ -106,7 +110,7 @@ def _parts(cells: Sequence[Mapping[str, Any]]) -> Iterator[_Title | Text | Line]
             yield from (line for line in lines_of_outputs([cell]) if not isinstance(line, ConclusionLine))
 
 
-def _markdown(source: str) -> Iterator[_Title | Text]:
+def _markdown(source: str) -> Iterator[_Heading | Paragraph]:
     paragraph: list[str] = []
     for line in [*source.splitlines(), ""]:
         heading = re.fullmatch(r"(#+)\s+(.*)", line)
@@ -114,12 +118,10 @@ def _markdown(source: str) -> Iterator[_Title | Text]:
             paragraph.append(line.strip())
             continue
         if paragraph:
-            yield Text(tuple(_spans(" ".join(paragraph))))
+            yield tuple(_spans(" ".join(paragraph)))
             paragraph = []
-        if heading and len(heading[1]) == 1:
-            yield _Title(heading[2].strip())
-        elif heading:
-            yield Text(tuple(_spans(heading[2].strip())), heading=True)
+        if heading:
+            yield _Heading(tuple(_spans(heading[2].strip())), len(heading[1]))
 
 
 def _spans(text: str) -> Iterator[Span]:
@@ -128,15 +130,16 @@ def _spans(text: str) -> Iterator[Span]:
             yield Span(part, symbol=index % 2 == 1 and part.partition("[")[0] in notation())
 
 
-def _section(title: str, parts: Sequence[Text | Line], setting: Setting) -> Section:
-    opening = tuple(takewhile(lambda part: isinstance(part, Text) and not part.heading, parts))
+def _section(heading: _Heading, parts: Sequence[_Part], setting: Setting) -> Section:
+    opening = tuple(takewhile(lambda part: isinstance(part, tuple), parts))
     rest = parts[len(opening) :]
     return Section(
-        title,
-        opening=tuple(part for part in opening if isinstance(part, Text)),
+        title=heading.title,
+        level=heading.level,
+        opening=tuple(part for part in opening if isinstance(part, tuple)),
         data=tuple(data_row(part, setting) for part in rest if isinstance(part, DatumLine | ChoiceLine)),
         work=tuple(
-            part if isinstance(part, Text) else work_row(part, setting)
+            part if isinstance(part, tuple) else work_row(part, setting)
             for part in rest
             if not isinstance(part, DatumLine | ChoiceLine)
         ),

@@ -48,7 +48,7 @@ class DataRow:
 
     anchor: str
     label: str
-    description: str
+    description: Paragraph
     value: Span
     place: str
     document: str
@@ -62,28 +62,24 @@ class WorkRow:
 
     anchor: str
     reference: tuple[Paragraph, ...]
-    description: str
+    description: Paragraph
     equations: tuple[Equation, ...]
     notes: tuple[Paragraph, ...]
     result: tuple[Paragraph, ...]
 
 
 @dataclass(frozen=True)
-class Text:
-    """A paragraph of the template, or a heading below that of the section."""
-
-    spans: Paragraph
-    heading: bool = False
-
-
-@dataclass(frozen=True)
 class Section:
-    """A part of a sheet under one heading: opening text, its data in one table, then the working with text between."""
+    """What stands under one heading of the template: opening text, the data in one table, the working with text between.
 
-    title: str
-    opening: tuple[Text, ...]
+    `level` is 1 for a subject and more for its parts.
+    """
+
+    title: Paragraph
+    level: int
+    opening: tuple[Paragraph, ...]
     data: tuple[DataRow, ...]
-    work: tuple[WorkRow | Text, ...]
+    work: tuple[WorkRow | Paragraph, ...]
 
 
 @dataclass(frozen=True)

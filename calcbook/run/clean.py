@@ -18,6 +18,7 @@ _ERROR_MARK = "papermill-error-cell-tag"
 _NOTEBOOK_NOISE = ("papermill", "language_info", "widgets")
 _CELL_NOISE = ("papermill", "execution")
 _CELL_FILE = re.compile(r"\S*ipykernel_\d+[\\/]\d+\.py|<ipython-input-[\w-]+>")
+_PLACE_OF_SYNTAX_ERROR = re.compile(r"\((?:\d+\.py|<ipython-input-[\w-]+>), (line \d+)\)$")
 
 
 def clean(notebook: nbformat.NotebookNode) -> nbformat.NotebookNode:
@@ -50,6 +51,7 @@ def _clean_cell(cell: nbformat.NotebookNode) -> None:
         cell.outputs = _join_streams(cell.outputs)
         for output in cell.outputs:
             if output["output_type"] == "error":
+                output["evalue"] = _PLACE_OF_SYNTAX_ERROR.sub(r"(\1)", output["evalue"])
                 output["traceback"] = [f"{output['ename']}: {output['evalue']}"]
             elif output["output_type"] == "stream":
                 output["text"] = _CELL_FILE.sub("<cell>", output["text"])

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import warnings
 from pathlib import Path
 from typing import Any
 
@@ -75,6 +76,12 @@ def executed(made: Any, folder: Path, engine: str) -> tuple[Any, str]:
     return clean(nbformat.read(target, as_version=4)), error
 
 
+def in_process(made: Any) -> str:
+    with warnings.catch_warnings():
+        warnings.simplefilter("default")
+        return canonical_text(clean(run_notebook(made)))
+
+
 def test_every_kind_of_output_is_the_same(tmp_path: Path) -> None:
     made = notebook(*(code(source) for source in EVERY_KIND_OF_OUTPUT))
     warm, warm_error = executed(made, tmp_path, "warm")
@@ -95,7 +102,7 @@ def test_failures_are_the_same(source: str, tmp_path: Path) -> None:
     assert warm_error == kernel_error
     assert warm.cells[1].execution_count == 2
     assert warm.cells[2].execution_count is None
-    assert canonical_text(clean(run_notebook(made))) == canonical_text(warm)
+    assert in_process(made) == canonical_text(warm)
 
 
 def test_every_kind_of_failure_is_the_same_and_one_that_is_allowed_does_not_stop(tmp_path: Path) -> None:
@@ -106,7 +113,7 @@ def test_every_kind_of_failure_is_the_same_and_one_that_is_allowed_does_not_stop
         assert warm_cell == kernel_cell
     assert warm_error == kernel_error == "KeyError: 'first\\nsecond' in cell 0 [1]"
     assert warm.cells[-1].outputs[0]["data"] == {"text/plain": "'end'"}
-    assert canonical_text(clean(run_notebook(made))) == canonical_text(warm)
+    assert in_process(made) == canonical_text(warm)
 
 
 @pytest.mark.slow
@@ -120,5 +127,4 @@ def test_every_template_is_the_same_under_every_engine(name: str, tmp_path: Path
         assert warm_cell == kernel_cell
     assert warm == kernel
     assert warm.trace.lines
-    in_process = clean(run_notebook(nbformat.reads(warm.workbook, as_version=4)))
-    assert canonical_text(in_process) == warm.workbook
+    assert in_process(nbformat.reads(warm.workbook, as_version=4)) == warm.workbook
