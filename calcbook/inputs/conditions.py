@@ -36,7 +36,7 @@ def _factors_of_load(row: Row) -> None:
         row.fault("power_factor", f"is empty; a load given as {power} needs it, and there is no safe value to assume")
     if power == "shaft_power" and row.lacks("efficiency"):
         row.fault("efficiency", "is empty; a load given as shaft_power needs it")
-    if power != "shaft_power" and row.text("efficiency") and not row.wrong.intersection(LOADS):
+    if power != "shaft_power" and (power or "current" in row.values) and row.text("efficiency"):
         row.fault("efficiency", "goes with shaft_power only: the other loads are what the circuit takes")
 
 

@@ -18,7 +18,7 @@ class FaultList:
         """Note one fault; raises InputFaults at once when there are so many that reading on helps nobody."""
         self._faults.append(Fault(file, place, message))
         if len(self._faults) == MOST_FAULTS:
-            self._faults.append(Fault("", "", f"more than {MOST_FAULTS} faults; the rest was not read"))
+            self._faults.append(Fault(file, "", f"more than {MOST_FAULTS} faults; the rest was not read"))
             self.raise_if_any()
 
     def any_in(self, file: str) -> bool:

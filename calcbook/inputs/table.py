@@ -60,7 +60,7 @@ class _NumberedLines:
 
 
 def _separator(text: str) -> str:
-    for line in io.StringIO(text):
+    for line in io.StringIO(text, newline=""):
         if line.strip(" \r\n;,") and not line.startswith("#"):
             return ";" if ";" in line else ","
     return ","

@@ -42,7 +42,8 @@ def wrong_characters(text: str) -> str:
     match = _REFUSED.search(text)
     if not match:
         return ""
-    name = unicodedata.name(match[0], "control character").lower()
+    unnamed = "control character" if unicodedata.category(match[0]) == "Cc" else "no character"
+    name = unicodedata.name(match[0], unnamed).lower()
     return (
         f"{shown(text)} holds {_code_point(match[0])} ({name}) as character {match.start() + 1}; "
         "control, direction and line-separating characters are not allowed"

@@ -62,6 +62,7 @@ def number_in(quantity: Quantity, unit: str) -> float:
     """The number of a quantity in another unit of the same dimension."""
     if quantity.unit == unit:
         return quantity.number
+    # imported here: it loads the unit library, which takes a third of a second and is seldom needed
     from calcbook.records.dimension import factor
 
     return quantity.number * factor(quantity.unit) / factor(unit)

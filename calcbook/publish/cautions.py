@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Iterable
 
 from calcbook.records.line import Line, TableLine
@@ -23,8 +24,8 @@ def table_name(line: TableLine) -> str:
 
 
 def numbered(table: str) -> str:
-    """A table's number with the word before it."""
-    return table if table.lower().startswith("table") else f"Table {table}"
+    """A table's number with the word before it; what is no number, as a clause in words, stands as it is."""
+    return f"Table {table}" if re.fullmatch(r"([A-Z]+\.)?\d[A-Z0-9.]*", table) else table
 
 
 def of_tables(lines: Iterable[Line]) -> str:

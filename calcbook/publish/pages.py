@@ -49,7 +49,7 @@ def _register_row(view: SheetView) -> RegisterRow:
         outcome=_outcome(view),
         governing=tuple(_elsewhere(span, home) for span in summary.governing) if summary else (),
         files=tuple(files),
-        notes=(*((view.caution,) if view.caution else ()), *(summary.cautions if summary else ())),
+        notes=summary.cautions if summary else tuple(filter(None, [view.caution])),
         open_items=summary.open_items if summary else (),
     )
 

@@ -43,4 +43,8 @@ def on_paper(text: str) -> str:
 def _breakable(match: re.Match[str]) -> str:
     """Breaks after signs that join words, and within what is still too long."""
     at_signs = re.sub(r"(?<=[_/.,-])(?=\w)", _BREAK, match[0])
-    return re.sub(rf"[^{_BREAK}]{{12}}(?=[^{_BREAK}]{{7}})", rf"\g<0>{_BREAK}", at_signs)
+    return re.sub(rf"[^{_BREAK}]{{{_LONGEST_WORD + 1},}}", _in_pieces, at_signs)
+
+
+def _in_pieces(match: re.Match[str]) -> str:
+    return re.sub(r".{12}(?=.)", rf"\g<0>{_BREAK}", match[0])

@@ -65,7 +65,7 @@ def _sheet(view: SheetView) -> dict[str, Literal]:
         "number": view.number,
         "title": view.title,
         "day": _day(block.date).timetuple()[:3],
-        "version": f"calcbook {view.version}".strip(),
+        "version": view.version,
         "block": {
             "project": " ".join(text for text in (block.number, block.title) if text),
             "client": block.client,

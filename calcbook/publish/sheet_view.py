@@ -58,12 +58,18 @@ def sheet_view(notebook: Mapping[str, Any], context: Context, failure: Failure |
         number=trace.sheet,
         title=trace.title,
         block=context.block,
-        version=str(notebook["metadata"].get("calcbook", {}).get("version", "")),
+        version=_version(notebook),
         sections=tuple(_sections(notebook["cells"], setting)),
         summary=_summary(conclusion, trace.lines) if conclusion else None,
         caution=cautions.of_tables(trace.lines),
         failure=failure or _failure(notebook["cells"]),
     )
+
+
+def _version(notebook: Mapping[str, Any]) -> str:
+    """The version of calcbook that computed the workbook, as it is printed."""
+    version = notebook["metadata"].get("calcbook", {}).get("version", "")
+    return f"calcbook {version}" if version else "calcbook, version not recorded"
 
 
 def _failure(cells: Sequence[Mapping[str, Any]]) -> Failure | None:

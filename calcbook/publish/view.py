@@ -70,7 +70,7 @@ class WorkRow:
 
 @dataclass(frozen=True)
 class Section:
-    """What stands under one heading of the template: opening text, the data in one table, the working with text between.
+    """What stands under one heading: opening text, the data in one table, then the working with text between.
 
     `level` is 1 for a subject and more for its parts.
     """

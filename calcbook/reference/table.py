@@ -22,6 +22,7 @@ from calcbook.records.printed import print_plain, with_unit
 from calcbook.records.printed_table import PrintedTable
 from calcbook.records.project import SignOff
 from calcbook.records.quantity import Quantity
+from calcbook.records.units import UNITS, kind_in_words
 
 Key = str | Quantity
 _NOT_KEYS = ("value", "status", "beyond")
@@ -114,29 +115,33 @@ class Table:
     def _equal(self, rows: list[Mapping[str, str]], name: str, wanted: Key) -> list[Mapping[str, str]]:
         head, unit = self._head(name), self.keys[name]
         if unit:
-            found = [row for row in rows if float(row[head]) == _number(wanted, unit, self.title, name)]
+            number = _number(wanted, unit, self.title, name)
+            shown = f"{number:g}{_space(unit)}"
+            found = [row for row in rows if float(row[head]) == number]
         else:
+            shown = _as_text(wanted)
             found = [row for row in rows if row[head] == wanted]
         if not found:
             has = ", ".join(dict.fromkeys(row[head] for row in rows))
-            raise LookUpFault(self.title, f"{name} {_as_text(wanted)}{_space(unit)} is not in the table; it has {has}")
+            raise LookUpFault(self.title, f"{name} {shown} is not in the table; it has {has}")
         return found
 
     def _from_row(self, rows: list[Mapping[str, str]], name: str, wanted: Key) -> tuple[list[Mapping[str, str]], str]:
         """The row of a stepped key: the exact one, else the next greater, else a last row that holds beyond."""
         head, unit = self._head(name), self.keys[name]
         number = _number(wanted, unit, self.title, name)
+        shown = f"{name} {number:g}{_space(unit)}"
         above = [row for row in rows if float(row[head]) >= number]
         if above:
             row = min(above, key=lambda row: float(row[head]))
             if float(row[head]) == number:
                 return [row], ""
-            return [row], f"{name} {_as_text(wanted)}{_space(unit)} read at {row[head]}{_space(unit)}, less favourable"
+            return [row], f"{shown} read at {row[head]}{_space(unit)}, less favourable"
         last = max(rows, key=lambda row: float(row[head]))
         if last.get("beyond"):
             return [last], f"no further change beyond {last[head]}"
         allowed = f"{min(float(row[head]) for row in rows):g} to {last[head]}{_space(unit)}"
-        raise LookUpFault(self.title, f"{name} {_as_text(wanted)}{_space(unit)} is outside the table, {allowed}")
+        raise LookUpFault(self.title, f"{shown} is outside the table, {allowed}")
 
     def printed(self, signed_off: SignOff | None = None) -> PrintedTable:
         """The whole table for the tables page."""
@@ -155,7 +160,11 @@ class Table:
 def _number(wanted: Key, unit: str, title: str, name: str) -> float:
     if isinstance(wanted, str):
         raise LookUpFault(title, f'{name} is a quantity in {unit}, got the word "{wanted}"')
-    return wanted.number if wanted.unit == unit else wanted.number * factor(wanted.unit) / factor(unit)
+    if wanted.kind not in UNITS[unit].kinds:
+        raise LookUpFault(title, f"{name} is a quantity in {unit}, got {kind_in_words(wanted.kind)}")
+    if wanted.unit == unit:
+        return wanted.number
+    return float(f"{wanted.number * factor(wanted.unit) / factor(unit):.12g}")  # 10e-6 m2 is the row of 10 mm2
 
 
 def _as_text(value: Key) -> str:

@@ -1,11 +1,13 @@
 from __future__ import annotations
 
 import pytest
-from publish_sample import CONTEXT, code, datum, derivations, hoist, markdown, notebook, step
+from publish_sample import CONTEXT, code, datum, derivations, hoist, markdown, notebook, step, table_value
 
 from calcbook.publish import anchors
+from calcbook.publish.cautions import numbered
+from calcbook.publish.rows import prose
 from calcbook.publish.sheet_view import Context, sheet_view
-from calcbook.publish.view import Formula, SheetView, Span, Text, WorkRow
+from calcbook.publish.view import Formula, SheetView, Span, WorkRow
 from calcbook.records.line import Binding, StepLine
 from calcbook.records.project import Origin
 
@@ -23,26 +25,20 @@ def view() -> SheetView:
     return sheet_view(hoist(), CONTEXT)
 
 
-def test_headings_open_sections_and_the_text_before_the_data_stays_before_it(view: SheetView) -> None:
-    assert [section.title for section in view.sections] == ["Three-phase power", "Cable current"]
+def test_every_heading_opens_a_section_with_its_text_data_and_working(view: SheetView) -> None:
+    titles = [(words((section.title,))[0], section.level) for section in view.sections]
+    assert titles == [("Three-phase power", 1), ("Cable current", 1), ("Capacity", 2), ("Criteria", 2)]
     first = view.sections[0]
-    assert first.opening == (Text((Span("Line current of the motor from its shaft power."),)),)
+    assert words(first.opening) == ["Line current of the motor from its shaft power."]
     assert [row.label for row in first.data] == ["P_2", "U_r", "eta", "cos_phi"]
-    assert isinstance(first.work[0], Text)
-    assert first.work[0].spans[1] == Span("U_r", symbol=True)
+    assert isinstance(first.work[0], tuple)
+    assert first.work[0][1] == Span("U_r", symbol=True)
 
 
 def test_every_datum_of_a_section_stands_in_its_table_in_the_order_of_the_workbook(view: SheetView) -> None:
-    labels = [row.label or row.description for row in view.sections[1].data]
-    assert labels == [
-        "method of installation",
-        "insulation of the conductor",
-        "size",
-        "theta_a",
-        "I_r",
-        "n",
-        "theta_ref",
-    ]
+    labels = [row.label or "".join(span.text for span in row.description) for row in view.sections[1].data]
+    assert labels == ["method of installation", "insulation of the conductor", "size", "theta_a", "I_r"]
+    assert [row.label for row in view.sections[2].data] == ["n", "theta_ref"]
 
 
 def test_a_datum_shows_place_document_and_status(view: SheetView) -> None:
@@ -151,10 +147,36 @@ def test_the_terms_of_a_sum_are_listed_with_links() -> None:
 
 def test_source_lists_of_lines_read_like_one_text() -> None:
     cell = markdown("")
-    cell["source"] = ["# Power\n", "\n", "One sentence,\n", "in two lines.\n", "## Below"]
-    section = sheet_view(notebook("C-1", "", [cell]), CONTEXT).sections[0]
-    assert section.opening == (Text((Span("One sentence, in two lines."),)),)
-    assert section.work == (Text((Span("Below"),), heading=True),)
+    cell["source"] = ["# Power of `U_n`\n", "\n", "One sentence,\n", "in two lines.\n", "## Below"]
+    above, below = sheet_view(notebook("C-1", "", [cell]), CONTEXT).sections
+    assert above.title == (Span("Power of "), Span("U_n", symbol=True))
+    assert words(above.opening) == ["One sentence, in two lines."]
+    assert (words((below.title,)), below.opening, below.data, below.work) == (["Below"], (), (), ())
+
+
+def test_names_of_the_notation_in_our_own_sentences_are_set_as_symbols() -> None:
+    assert prose("greatest I_2 that fits, my_word") == (
+        Span("greatest "),
+        Span("I_2", symbol=True),
+        Span(" that fits, "),
+        Span("my_word"),
+    )
+
+
+def test_a_table_value_without_a_column_prints_none() -> None:
+    line = table_value("C-1", "k_2", 1.2, "1", ("relay", ""))
+    row = rows_of(sheet_view(notebook("C-1", "", [code(line)]), CONTEXT))["k_2"]
+    assert words(row.notes)[0] == "row relay"
+
+
+def test_only_numbers_of_tables_get_the_word_before_them() -> None:
+    names = ("B.52.12", "52.1", "7", "523.6 (clause)", "overload relays, conventional operation")
+    assert [numbered(name) for name in names] == ["Table B.52.12", "Table 52.1", "Table 7", *names[3:]]
+
+
+def test_a_workbook_that_does_not_say_its_version_prints_so() -> None:
+    assert sheet_view(hoist(), CONTEXT).version == "calcbook 0.1.0"
+    assert sheet_view({"metadata": {}, "cells": []}, CONTEXT).version == "calcbook, version not recorded"
 
 
 def test_anchors_are_ascii_and_distinct() -> None:

@@ -27,8 +27,8 @@ PHASE_VOLTAGE = VOLTAGE / math.sqrt(3)
 
 # A.C. analysis is one linear solution in double precision, printed with 12 digits.
 EXACT = 1e-9
-# Transient analysis integrates in steps of 10 us; its error in a 50 Hz sine is of the order (omega*step)^2 = 1e-5.
-STEP, STEPPED = 1e-5, 5e-5
+# Transient analysis integrates in steps of 10 us; its error in a 50 Hz sine is of the order (omega*step)^2 / 12 = 1e-6.
+STEP, STEPPED = 1e-5, 1e-5
 
 
 def _branches(connection: str) -> str:

@@ -54,13 +54,15 @@ def test_a_cell_that_may_fail_does_not_end_the_execution() -> None:
 
 def test_a_display_is_updated_by_its_id_and_outputs_are_cleared() -> None:
     shown = outputs(
-        "from IPython.display import clear_output, display\nhandle = display({'text/plain': 'old'}, raw=True, display_id='d')",
+        "from IPython.display import clear_output",
+        "handle = display({'text/plain': 'old'}, raw=True, display_id='d')",
         "handle.update({'text/plain': 'new'}, raw=True)",
         "print('gone')\nclear_output()\nprint('kept')",
         "print('gone')\nclear_output(wait=True)\nprint('kept')",
         "print('kept')\nclear_output(wait=True)",
     )
     assert [[output.get("text", output.get("data")) for output in cell] for cell in shown] == [
+        [],
         [{"text/plain": "new"}],
         [],
         ["kept\n"],

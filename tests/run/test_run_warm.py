@@ -184,7 +184,7 @@ def test_papermill_marks_a_failed_notebook_as_it_does_with_its_own_engine(tmp_pa
 def test_options_the_engine_cannot_honour_are_refused(tmp_path: Path) -> None:
     source = tmp_path / "in.ipynb"
     nbformat.write(notebook(code("1")), source)
-    with pytest.raises(UsageFault, match="^engine calcbook: execution_timeout is not available"):
+    with pytest.raises(UsageFault, match=r"^engine calcbook: execution_timeout is not available"):
         papermill.execute_notebook(source, None, engine_name="calcbook", progress_bar=False, execution_timeout=5)
 
 

@@ -107,6 +107,8 @@ _TOKEN = re.compile(
     re.ASCII,
 )
 
+_SPACES = " \t\n\r\f\v"  # what the token pattern skips: no other kind of space is part of the grammar
+
 
 @dataclass(frozen=True)
 class _Token:
@@ -160,7 +162,7 @@ class _Parser:
 
     def expect_end(self) -> None:
         if self.tokens[self.at].sort != "end":
-            raise self.fault(f'"{self.peek()}" does not belong here')
+            raise self.fault(f'"{_short(self.peek())}" does not belong here')
 
     def sum_(self) -> Node:
         self.depth += 1
@@ -203,7 +205,7 @@ class _Parser:
     def bounded(self, node: Node) -> Node:
         inner = node.body if isinstance(node, Bracket) else node
         if isinstance(inner, Number) and inner.value > LARGEST_EXPONENT:
-            raise self.fault(f"exponent {inner.text}; allowed is {LARGEST_EXPONENT}")
+            raise self.fault(f"exponent {_short(inner.text)}; allowed is {LARGEST_EXPONENT}")
         if any(isinstance(part, Binary) and part.operator == "^" for part in walk(inner)):
             raise self.fault("a power within an exponent")
         return node
@@ -212,7 +214,7 @@ class _Parser:
         token = self.take()
         if token.sort == "number":
             if not float(token.text) <= LARGEST_NUMBER:
-                raise WrittenFormFault(self.text, f"number {token.text} is too large", token.position)
+                raise WrittenFormFault(self.text, f"number {_short(token.text)} is too large", token.position)
             return Number(token.text)
         if token.sort == "name":
             return self.call(token) if self.peek() == "(" else self.symbol(token)
@@ -220,7 +222,7 @@ class _Parser:
             node = self.sum_()
             self.expect(")")
             return Bracket(node)
-        found = f'"{token.text}"' if token.text else "the end"
+        found = f'"{_short(token.text)}"' if token.text else "the end"
         raise WrittenFormFault(self.text, f"{found} found where a value belongs", token.position)
 
     def symbol(self, token: _Token) -> Node:
@@ -232,7 +234,7 @@ class _Parser:
 
     def call(self, token: _Token) -> Node:
         if token.text not in FUNCTIONS:
-            message = f'"{token.text}" is not a function; {nearest(token.text, FUNCTIONS)}'
+            message = f'"{_short(token.text)}" is not a function; {nearest(token.text, FUNCTIONS)}'
             raise WrittenFormFault(self.text, message, token.position)
         self.expect("(")
         first = self.comparison() if token.text == "choose" else self.sum_()
@@ -255,13 +257,18 @@ class _Parser:
         return Comparison(self.take().text, left, self.sum_())
 
 
+def _short(text: str) -> str:
+    """A part of a written form as a message quotes it."""
+    return text if len(text) <= 24 else text[:21] + "..."
+
+
 def _tokens(text: str) -> Iterator[_Token]:
     position = 0
-    end = len(text.rstrip())
+    end = len(text.rstrip(_SPACES))
     while position < end:
         match = _TOKEN.match(text, position)
         if match is None:
-            start = position + len(text[position:]) - len(text[position:].lstrip())
+            start = position + len(text[position:]) - len(text[position:].lstrip(_SPACES))
             raise WrittenFormFault(text, f"character {text[start]!r} is not part of the grammar", start)
         sort = match.lastgroup or "sign"
         yield _Token(sort, match[sort], match.start(sort))
