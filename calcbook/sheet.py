@@ -44,6 +44,8 @@ from calcbook.records.written.algebra import number_function
 from calcbook.records.written.tree import Symbol, rename, symbols_of, write
 from calcbook.reference.table import table, tables
 
+_UNPUBLISHED = "no published example among the tests of this formula"
+
 
 def open_sheet(template: str, parameters: Mapping[str, Any]) -> Sheet:
     """A sheet for a template.
@@ -212,7 +214,7 @@ class Sheet:
                 calculated=value,
                 calculated_text=print_calculated(value),
                 adopted=adopted,
-                remark=remark,
+                remark="; ".join(filter(None, (remark, "" if formula.published else _UNPUBLISHED))),
             )
         )
 

@@ -36,13 +36,10 @@ def _capacity_needed() -> Any:
 CABLE_CURRENT = Derivation(
     key="cable-current",
     title="Current of a cable from the heat balance of its conductor",
-    opening=(
-        "In steady service the heat made in a conductor equals the heat given off, which grows with the rise over "
-        "ambient. The resistance is taken at the greatest temperature throughout, which is on the warm side."
-    ),
     stages=(
         Stage("balance", "theta - theta_a", "R*R_th*I^2",
-              "heat balance per length of cable: the rise is the loss times the thermal resistance",
+              "in steady service the heat made equals the heat given off: the rise over ambient is the loss times the "
+              "thermal resistance; the resistance is taken at the greatest temperature, the warm side",
               is_premise=True),
         Stage("table", "theta_max - theta_ref", "R*R_th*I_t^2", "the tabulated capacity, at the table's own ambient",
               is_premise=True),

@@ -36,7 +36,6 @@ class Derivation:
 
     key: str
     title: str
-    opening: str
     stages: tuple[Stage, ...]
 
     def premises(self) -> dict[Any, Any]:
@@ -54,7 +53,7 @@ class Derivation:
                 f"derivation {self.key}, {stage.name}: {stage.left} = {stage.right} is not proven; "
                 f"the difference is {remainder}"
             )
-        return "difference from the derived expression simplified to 0"
+        return "difference from the derived form simplified to 0"
 
     def _expanded(self, reached: Any) -> Any:
         premises = self.premises()

@@ -13,7 +13,11 @@ _SHIFTS = ("", " - 2*pi/3", " - 4*pi/3")
 def _premises() -> list[Stage]:
     stages = [Stage("T", "T", "2*pi/omega", "period of the supply", is_premise=True)]
     for index, shift in enumerate(_SHIFTS, start=1):
-        reason = "sinusoidal voltages of equal size, a third of a period apart" if index == 1 else "the same"
+        reason = (
+            "balanced supply: sinusoidal voltages of equal size, a third of a period apart"
+            if index == 1
+            else "the same"
+        )
         stages.append(Stage(f"u_{index}", f"u_{index}", _VOLTAGE.format(shift=shift), reason, is_premise=True))
     for index, shift in enumerate(_SHIFTS, start=1):
         reason = "each current lags behind its voltage by the angle φ" if index == 1 else "the same"
@@ -103,6 +107,5 @@ def _line_currents() -> list[Stage]:
 THREE_PHASE_POWER = Derivation(
     key="three-phase-power",
     title="Three-phase power from sinusoidal phase quantities",
-    opening="A balanced three-phase load: voltages and currents of equal size, a third of a period apart.",
     stages=(*_STAGES, *_line_currents()),
 )

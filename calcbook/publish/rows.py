@@ -29,6 +29,12 @@ from calcbook.records.project import Adopted, Origin
 from calcbook.records.written.tree import parse
 
 _SIGNS = {"<=": "≤", ">=": "≥"}
+#: status of a table's row -> how its value was obtained, in words
+_OBTAINED = {
+    "public": "read in a public text",
+    "formula": "recalled and reproduced by formula",
+    "memory": "from memory",
+}
 
 
 @dataclass(frozen=True)
@@ -112,13 +118,10 @@ def _value(line: Valued, text: str, link: str = "", before: str = "") -> Paragra
 def _table_value(line: TableLine, setting: Setting) -> WorkRow:
     citation = line.citation
     standard = f"{citation.standard}:{citation.edition}" if citation.edition else citation.standard
-    cell = [f"{name} {text}" for name, text in (("row", citation.row), ("column", citation.column)) if text]
-    notes = [sentence(*cell)] if cell else []
+    cell = ", ".join(f"{name} {text}" for name, text in (("row", citation.row), ("column", citation.column)) if text)
+    notes = [sentence("; ".join(text for text in (cell, citation.remark, compared(citation)) if text))]
     if line.arguments:
         notes.append(_arguments(line.arguments))
-    if citation.remark:
-        notes.append(sentence(citation.remark))
-    notes.append(sentence(compared(citation)))
     return WorkRow(
         anchor=anchors.anchor(line.label),
         reference=(sentence(standard), sentence(numbered(citation.table))),
@@ -133,7 +136,8 @@ def compared(citation: Citation) -> str:
     """Whether the table has been compared with a licensed copy, and by whom."""
     signed = citation.signed_off
     if signed is None:
-        return f"obtained: {citation.status}; {NOT_COMPARED}" if citation.status else NOT_COMPARED
+        obtained = " and ".join(_OBTAINED.get(part, part) for part in citation.status.split("+") if part)
+        return ", ".join(text for text in (obtained, NOT_COMPARED) if text)
     return f"compared with {signed.document} by {signed.by}, {signed.date}"
 
 
@@ -274,12 +278,12 @@ def _criterion(
 
 
 def _derivation(line: DerivationLine) -> WorkRow:
-    notes = [prose(text) for text in (line.reason, f"proof: {line.proof}" if line.proof else "") if text]
+    standing: Paragraph = (Span(line.standing),)
     return WorkRow(
         anchor=anchors.anchor(line.label),
         reference=(sentence(f"formula: {line.formula.replace('_', ' ')}"),) if line.formula else (),
-        description=prose(line.description),
+        description=prose(line.reason),
         equations=(Equation(Formula(parse(line.left)), "=", Formula(parse(line.right))),),
-        notes=tuple(notes),
-        result=((Span(line.standing),),),
+        notes=(),
+        result=(standing, sentence(line.proof)) if line.proof else (standing,),
     )

@@ -143,6 +143,7 @@ def _work_row(row: WorkRow) -> dict[str, Literal]:
     return {
         "reference": [_paragraph(line) for line in row.reference],
         "description": _paragraph(row.description),
+        "chain": Mathematics(_chain(row.equations)) if row.equations else None,
         "aligned": Mathematics(" \\ ".join(map(_aligned, row.equations))) if row.equations else None,
         "lines": [Mathematics(_unaligned(equation)) for equation in row.equations],
         "notes": [_paragraph(line) for line in row.notes],
@@ -162,6 +163,15 @@ def _span(span: Span) -> Literal:
 
 def _symbol(label: str) -> Mathematics:
     return Mathematics(print_typst.symbol(label))
+
+
+def _chain(equations: tuple[Equation, ...]) -> str:
+    """All equations in one line; one with a left side of its own stands apart."""
+    first, *others = equations
+    parts = [_unaligned(first)]
+    for equation in others:
+        parts += ["quad", _unaligned(equation)] if equation.left is not None else [_unaligned(equation)]
+    return " ".join(parts)
 
 
 def _aligned(equation: Equation) -> str:

@@ -65,7 +65,7 @@ def tell_apart(left: Quantity, left_text: str, right: Quantity, right_text: str)
     """
     sides = (left_text, right_text)
     figures = 3
-    while not _in_order(sides, left.number - right.number) and figures < 15:
+    while not _in_order(sides, left.number - right.number) and figures < 17:  # 17 figures tell any two floats apart
         figures += 1
         sides = (print_calculated(left, figures), print_calculated(right, figures))
     return sides

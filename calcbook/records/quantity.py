@@ -31,7 +31,10 @@ def read_number(text: str) -> float:
     if len(stripped) > _LONGEST_NUMBER:
         raise QuantityFault(f"a number of {len(stripped)} characters; allowed are {_LONGEST_NUMBER}")
     if re.fullmatch(r"[+-]?\d+,\d+", stripped, re.ASCII):
-        raise QuantityFault(f'"{stripped}" has a decimal comma; write "{stripped.replace(",", ".")}"')
+        thousands = (
+            f' or "{stripped.replace(",", "")}"' if re.fullmatch(r"[+-]?\d{1,3},\d{3}", stripped, re.ASCII) else ""
+        )
+        raise QuantityFault(f'"{stripped}" has a decimal comma; write "{stripped.replace(",", ".")}"{thousands}')
     if not _NUMBER.fullmatch(stripped):
         raise QuantityFault(f'"{stripped}" is not a number')
     number = float(stripped)

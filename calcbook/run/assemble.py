@@ -8,6 +8,7 @@ from collections.abc import Iterator, Sequence
 from nbformat.notebooknode import NotebookNode
 from nbformat.v4 import new_code_cell, new_notebook
 
+from calcbook import __version__
 from calcbook.errors import TemplateFault
 from calcbook.records.project import SheetPlan
 from calcbook.records.trace import SCHEMA_VERSION
@@ -46,6 +47,7 @@ def assemble(plan: SheetPlan, templates: Sequence[Template]) -> NotebookNode:
         "sheet": plan.number,
         "title": plan.title,
         "templates": [template.name for template in templates],
+        "version": __version__,
     }
     return new_notebook(cells=cells, metadata={"calcbook": about, "kernelspec": dict(_KERNELSPEC)})
 

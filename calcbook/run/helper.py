@@ -111,7 +111,7 @@ class WarmHelper:
     def kill(self) -> None:
         """End the process and its child at once."""
         with contextlib.suppress(ProcessLookupError):
-            self._process.kill()
+            os.killpg(self._process.pid, signal.SIGKILL)
         self._process.wait()
         self.close()
 

@@ -31,7 +31,7 @@ Notebook = TypeVar("Notebook", bound=MutableMapping[str, Any])
 _CONFIG = Config({"HistoryManager": {"enabled": False, "hist_file": ":memory:"}})
 _MISSING = object()
 _BUILTINS = ("__IPYTHON__", "display", "get_ipython", "_")
-_PROMPTS = ("ps1", "ps2", "ps3")
+_SYSTEM = ("excepthook", "last_traceback", "last_type", "last_value", "ps1", "ps2", "ps3")
 
 
 class Outputs:
@@ -156,6 +156,7 @@ class _NotebookShell(InteractiveShell):  # type: ignore[misc]
 
     def __init__(self, outputs: Outputs) -> None:
         self.outputs = outputs
+        self.result_failed = False
         super().__init__(config=_CONFIG)
         atexit.unregister(self.atexit_operations)
 
@@ -169,6 +170,7 @@ class _NotebookShell(InteractiveShell):  # type: ignore[misc]
         pass
 
     def _showtraceback(self, etype: type[BaseException], evalue: BaseException, stb: list[str]) -> None:
+        self.result_failed |= self.displayhook.is_active
         self.outputs.add(
             {"output_type": "error", "ename": str(etype.__name__), "evalue": str(evalue), "traceback": list(stb)}
         )
@@ -177,18 +179,18 @@ class _NotebookShell(InteractiveShell):  # type: ignore[misc]
 @contextmanager
 def _shell() -> Iterator[_NotebookShell]:
     """A fresh shell, known to IPython as the only one; afterwards modules, built-ins and hooks are as before."""
-    main, hook, previous = sys.modules["__main__"], sys.excepthook, InteractiveShell._instance
+    main, previous = sys.modules["__main__"], InteractiveShell._instance
     names = {name: getattr(builtins, name, _MISSING) for name in _BUILTINS}
-    prompts = {name: getattr(sys, name, _MISSING) for name in _PROMPTS}
+    system = {name: getattr(sys, name, _MISSING) for name in _SYSTEM}
     try:
         shell = _NotebookShell(Outputs())
         InteractiveShell._instance = shell
         yield shell
     finally:
         InteractiveShell._instance = previous
-        sys.modules["__main__"], sys.excepthook = main, hook
+        sys.modules["__main__"] = main
         _put_back(builtins, names)
-        _put_back(sys, prompts)
+        _put_back(sys, system)
 
 
 def _put_back(module: object, attributes: Mapping[str, object]) -> None:
@@ -217,11 +219,13 @@ def run_cells(cells: Sequence[Cell], report: Callable[[CellRun], None]) -> None:
 def _run_cell(shell: _NotebookShell, index: int, source: str) -> CellRun:
     outputs = shell.outputs
     outputs.start_cell(index)
+    shell.result_failed = False
     count = shell.execution_count
     with redirect_stdout(_Stream("stdout", outputs)), redirect_stderr(_Stream("stderr", outputs)):
         result = shell.run_cell(source, store_history=True)
     updated = [(earlier, outputs.by_cell[earlier]) for earlier in sorted(outputs.updated - {index})]
-    return CellRun(index, count, outputs.current, bool(result.success), updated)
+    succeeded = bool(result.success) and not shell.result_failed
+    return CellRun(index, count, outputs.current, succeeded, updated)
 
 
 def run_notebook(notebook: Notebook) -> Notebook:

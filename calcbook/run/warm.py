@@ -9,7 +9,6 @@ from __future__ import annotations
 
 import gc
 import os
-import random
 import select
 import signal
 import threading
@@ -74,7 +73,6 @@ def _be_the_child(cells: list[dict[str, Any]], writing: int) -> None:
         nothing = os.open(os.devnull, os.O_RDWR)
         for descriptor in (_STDIN, _STDOUT, _STDERR):
             os.dup2(nothing, descriptor)
-        random.seed()
         run_cells(cells, lambda run: send(writing, asdict(run)))
         send(writing, {"end": DONE})
         code = 0

@@ -18,6 +18,7 @@ from small_templates import (
     template,
 )
 
+import calcbook
 from calcbook.errors import TemplateFault
 from calcbook.run.assemble import assemble
 from calcbook.run.templates import find_template
@@ -60,8 +61,13 @@ def test_two_templates_become_one_workbook(tmp_path: Path) -> None:
 def test_the_workbook_says_what_it_is(tmp_path: Path) -> None:
     save_load_and_cable(tmp_path)
     made = assembled(tmp_path, "small-load")
-    about = {"schema": 1, "sheet": "C-014", "title": "Travelling hoist", "templates": ["small-load"]}
-    assert made.metadata.calcbook == about
+    assert made.metadata.calcbook == {
+        "schema": 1,
+        "sheet": "C-014",
+        "title": "Travelling hoist",
+        "templates": ["small-load"],
+        "version": calcbook.__version__,
+    }
     assert set(made.metadata) == {"calcbook", "kernelspec"}
     assert made.metadata.kernelspec.name == "python3"
 

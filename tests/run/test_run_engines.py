@@ -50,6 +50,7 @@ EVERY_KIND_OF_OUTPUT = [
 FAILURES = {
     "an exception": "1 / 0",
     "a quiet end": "import sys\nsys.exit()",
+    "a result that cannot be shown": "class Bad:\n    def __repr__(self): raise ValueError('no text')\nBad()",
     "an unknown magic": "%no_such_magic",
 }
 EVERY_KIND_OF_FAILURE = [
@@ -62,6 +63,7 @@ EVERY_KIND_OF_FAILURE = [
     "raise KeyboardInterrupt",
     "from calcbook.errors import SheetFault\nraise SheetFault('C-014', 'cable-current', 'I_Z', 'is short')",
     "class Bad:\n    def __repr__(self): raise ValueError('no text')\nBad()",
+    "display(Bad())",
 ]
 
 

@@ -143,6 +143,7 @@ def test_a_record_that_is_no_line_has_failed(tmp_path: Path) -> None:
     assert failure.message.startswith("template odd: displays a record that is no line of a sheet: ")
 
 
+@pytest.mark.slow
 @pytest.mark.parametrize("engine", ENGINES)
 def test_nothing_is_said_and_no_file_is_left(
     engine: EngineName, tmp_path: Path, capfd: pytest.CaptureFixture[str]
@@ -151,11 +152,12 @@ def test_nothing_is_said_and_no_file_is_left(
     home.mkdir()
     save_load_and_cable(project)
     save_with(project, "fails", "1 / 0")
+    save_with(project, "dies", "import os\nos._exit(1)")
     before = {path: path.stat().st_mtime_ns for path in project.rglob("*")}
     script = (
         "import sys; sys.path.insert(0, sys.argv[1])\n"
         "from pathlib import Path; from small_templates import plan; from calcbook.run.execute import execute_sheet\n"
-        "for name in ('small-load', 'fails'): execute_sheet(plan(name), Path(sys.argv[2]), sys.argv[3])\n"
+        "for name in ('small-load', 'fails', 'dies'): execute_sheet(plan(name), Path(sys.argv[2]), sys.argv[3])\n"
     )
     command = [sys.executable, "-c", script, str(Path(__file__).parent), str(project), engine]
     subprocess.run(command, env={**os.environ, "TMPDIR": str(home), "HOME": str(home)}, cwd=home, check=True)

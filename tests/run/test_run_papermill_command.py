@@ -10,6 +10,8 @@ import nbformat
 import pytest
 from small_templates import save_load_and_cable, save_with
 
+pytestmark = pytest.mark.slow
+
 
 def papermill(*arguments: str | Path) -> subprocess.CompletedProcess[str]:
     command = [sys.executable, "-m", "papermill", *map(str, arguments)]

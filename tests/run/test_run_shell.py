@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import builtins
+import gc
 import sys
 import threading
 from pathlib import Path
@@ -84,13 +85,21 @@ def test_cells_find_their_globals_in_the_main_module() -> None:
 def test_the_process_is_left_as_it_was(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
     monkeypatch.setenv("IPYTHONDIR", str(tmp_path / "ipython"))
     before = (sys.modules["__main__"], sys.stdout, sys.stderr, sys.displayhook, sys.excepthook, set(vars(builtins)))
-    outputs("import sys\nsys.ps1", "raise ValueError")
+    outputs("import sys\nsys.ps1", "1 / 0")
     after = (sys.modules["__main__"], sys.stdout, sys.stderr, sys.displayhook, sys.excepthook, set(vars(builtins)))
     assert after == before
     assert get_ipython() is None
     assert not hasattr(sys, "ps1")
+    assert not isinstance(getattr(sys, "last_value", None), ZeroDivisionError)
     assert not (tmp_path / "ipython").exists()
     assert "IPythonHistorySavingThread" not in [thread.name for thread in threading.enumerate()]
+
+
+def test_shells_do_not_pile_up() -> None:
+    for _ in range(5):
+        outputs("1")
+    gc.collect()
+    assert len([kept for kept in gc.get_objects() if type(kept).__name__ == "_NotebookShell"]) < 3
 
 
 def test_the_notebook_that_was_handed_in_is_not_touched() -> None:

@@ -159,16 +159,16 @@ class Layout:
     def sum(self, body: Node) -> str:
         """A sum over keyed lines: the sign with the general term, or the terms themselves."""
         setter = self.setter
-        if self.texts is None:
+        texts_of = self.texts or {}
+        found = {label: texts_of.get(label, "") for label in map(write, symbols_of(body))}
+        keyed = {label: texts for label, texts in found.items() if not isinstance(texts, str)}
+        if not keyed or not all(keyed.values()):
             return setter.row([setter.below("∑", "", ""), self.of(body)])
-        keyed = {
-            label: text for label in map(write, symbols_of(body)) if not isinstance(text := self.texts[label], str)
-        }
-        count = min((len(texts) for texts in keyed.values()), default=0)
+        count = min(len(texts) for texts in keyed.values())
         shown = range(count) if count <= _MOST_TERMS else [0, 1, count - 1]
         terms = []
         for index in shown:
-            texts = {**self.texts, **{label: values[index] for label, values in keyed.items()}}
+            texts = {**texts_of, **{label: values[index] for label, values in keyed.items()}}
             terms.append(Layout(setter, texts).of(body))
         if count > _MOST_TERMS:
             terms.insert(2, setter.sign("…"))

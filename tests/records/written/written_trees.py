@@ -60,7 +60,7 @@ def _call(inner: st.SearchStrategy[Node]) -> Callable[[str], st.SearchStrategy[N
 
 def tame_forms(depth: int = 3) -> st.SearchStrategy[Node]:
     """Forms of positive parts without differences: every rounding error stays in proportion to the result."""
-    leaf = st.sampled_from([Number("2"), Number("1.45"), Number("0.3"), *map(Symbol, NAMES)])
+    leaf: st.SearchStrategy[Node] = st.sampled_from([Number("2"), Number("1.45"), Number("0.3"), *map(Symbol, NAMES)])
     if depth == 0:
         return leaf
     part = tame_forms(depth - 1)
