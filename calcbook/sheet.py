@@ -44,7 +44,7 @@ from calcbook.records.written.algebra import number_function
 from calcbook.records.written.tree import Symbol, rename, symbols_of, write
 from calcbook.reference.table import table, tables
 
-_UNPUBLISHED = "no published example among the tests of this formula"
+_UNPUBLISHED = "no published example"
 
 
 def open_sheet(template: str, parameters: Mapping[str, Any]) -> Sheet:

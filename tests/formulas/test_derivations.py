@@ -23,7 +23,7 @@ PROVEN = [
 
 @pytest.mark.parametrize(("derivation", "stage"), PROVEN)
 def test_a_stage_is_proven(derivation: Derivation, stage: Stage) -> None:
-    assert derivation.prove(stage) == "difference from the derived expression simplified to 0"
+    assert derivation.prove(stage) == "difference from the derived form simplified to 0"
 
 
 @pytest.mark.parametrize(("derivation", "stage"), PROVEN)

@@ -55,6 +55,7 @@ def test_every_spelling_of_the_list_is_read(unit: str, number: float) -> None:
     [
         ("12O m", "one_way_length", '"12O" is not a number'),
         ("1,5 m", "one_way_length", '"1,5" has a decimal comma; write "1.5"'),
+        ("1,500 m", "one_way_length", '"1,500" has a decimal comma; write "1.500" or "1500"'),
         ("5*3 m", "one_way_length", '"5*3" is not a number'),
         ("1/2 m", "one_way_length", '"1/2" is not a number'),
         ("1.000,5 m", "one_way_length", '"1.000,5" is not a number'),

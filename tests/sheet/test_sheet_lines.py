@@ -154,7 +154,7 @@ def test_citations_carry_the_edition_of_the_basis(monkeypatch: pytest.MonkeyPatc
     sheet.criterion("same", I_B <= sheet.step("I_L", three_phase.DESIGN_CURRENT, I=I_B), cite="IEC 60364-5-52, 523")
     covering, ambient = sheet.choice("insulation", "insulation"), sheet.datum("ambient")
     sheet.table_value("C_a", choose.AMBIENT_FACTOR, insulation=covering, ambient=ambient)
-    criterion, line = sheet.lines[2], sheet.lines[-1]
+    criterion, line = sheet.lines[3], sheet.lines[-1]
     assert isinstance(criterion, InequalityLine)
     assert isinstance(line, TableLine)
     assert criterion.reference == "IEC 60364-5-52:2011, 523"
