@@ -43,6 +43,9 @@ class _WithoutArithmetic:
         raise DimensionFault(f"{self!r}: a criterion is <= or >=, so that the limit itself is allowed")
 
     __gt__ = __lt__
+    def _ipython_display_(self) -> None:
+        """Nothing: the line itself was displayed when it was made."""
+
     __hash__ = None  # type: ignore[assignment]  # nothing may key on a value
 
 
