@@ -6,13 +6,13 @@ import json
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from functools import cache
-from typing import Annotated, Any
+from typing import Annotated, Any, Literal
 
 from pydantic import Field, TypeAdapter
 
 from calcbook.records.line import Identity, Line
 
-SCHEMA_VERSION = 1
+SCHEMA_VERSION: Literal[1] = 1
 LINE_MIME = "application/vnd.calcbook.line.v1+json"
 
 _Line = Annotated[Line, Field(discriminator="form")]
@@ -22,7 +22,7 @@ _Line = Annotated[Line, Field(discriminator="form")]
 class Trace:
     """Everything one sheet rests on and says; `templates` in order, `lines` in the order of the sheet."""
 
-    schema: int
+    schema: Literal[1]
     sheet: str
     title: str
     templates: tuple[str, ...]
