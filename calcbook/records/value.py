@@ -43,6 +43,7 @@ class _WithoutArithmetic:
         raise DimensionFault(f"{self!r}: a criterion is <= or >=, so that the limit itself is allowed")
 
     __gt__ = __lt__
+
     def _ipython_display_(self) -> None:
         """Nothing: the line itself was displayed when it was made."""
 

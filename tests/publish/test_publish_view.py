@@ -77,8 +77,7 @@ def test_a_table_value_names_its_cell_and_whether_it_was_compared(view: SheetVie
     rows = rows_of(view)
     assert words(rows["I_t"].reference) == ["IEC 60364-5-52:2009", "Table B.52.12"]
     assert words(rows["I_t"].notes) == [
-        "row 25 mm², column E, XLPE, copper, 3 loaded; "
-        "from memory of the standard, not compared with a licensed copy",
+        "row 25 mm², column E, XLPE, copper, 3 loaded; from memory of the standard, not compared with a licensed copy",
         "for method E, insulation XLPE90, size 25\N{NO-BREAK SPACE}mm², loaded 3",
     ]
     assert words(rows["C_a"].notes)[0].split("; ")[-1] == "compared with licensed copy 7 by AB, 2026-02-01"

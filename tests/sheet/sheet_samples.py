@@ -28,7 +28,7 @@ MOTOR: dict[str, str] = {
 }
 
 
-def quiet_sheet(monkeypatch: pytest.MonkeyPatch, given: Mapping[str, Any] | None = None, **changes: str) -> Sheet:
+def quiet_sheet(monkeypatch: pytest.MonkeyPatch, given: Mapping[str, Any] | None = None, /, **changes: str) -> Sheet:
     """A sheet whose displays go nowhere: what is displayed is tested on the templates."""
     monkeypatch.setattr(calcbook.sheet, "display", lambda *_, **__: None)
     return Sheet("test", {**MOTOR, **changes}, {"sheet": "C-001", **(given or {})})
