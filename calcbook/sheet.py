@@ -19,9 +19,11 @@ from calcbook.formulas.register import DERIVATIONS, formulas
 from calcbook.records.conclude import conclusion
 from calcbook.records.dimension import coherent_number, in_unit
 from calcbook.records.display import bundle
+from calcbook.records.given import Given, flat_parameters
 from calcbook.records.line import (
     Argument,
     Binding,
+    BroughtForwardLine,
     ChoiceLine,
     Citation,
     DatumLine,
@@ -35,7 +37,6 @@ from calcbook.records.line import (
 )
 from calcbook.records.notation import Name, named, names_of_parameter, out_of_range
 from calcbook.records.printed import print_calculated, print_given, print_number, tell_apart
-from calcbook.records.project import Adopted, Origin, SignOff
 from calcbook.records.quantity import Quantity, read_quantity
 from calcbook.records.recompute import judge, judge_rule
 from calcbook.records.trace import line_from_json, line_to_json
@@ -51,13 +52,9 @@ def open_sheet(template: str, parameters: Mapping[str, Any]) -> Sheet:
     """A sheet for a template.
 
     Parameters: `template` its name; `parameters` the notebook's `globals()`, of which only the template's parameters
-    are read: texts by parameter name, and `given` (origins, adopted values, sign-offs, number and title).
+    are read: texts by parameter name, repeated ones as a dict of texts by key, and `given`.
     """
-    return Sheet(
-        template,
-        {name: value for name, value in parameters.items() if isinstance(value, str)},
-        parameters.get("given") or {},
-    )
+    return Sheet(template, flat_parameters(parameters), parameters.get("given") or {})
 
 
 class Sheet:
@@ -66,16 +63,13 @@ class Sheet:
     def __init__(self, template: str, parameters: Mapping[str, str], given: Mapping[str, Any]) -> None:
         self.template = template
         self.parameters = dict(parameters)
-        self.number = str(given.get("sheet", "alone"))
-        self.origins: Mapping[str, Any] = given.get("origins", {})
-        self.adopted: Mapping[str, Any] = given.get("adopted", {})
-        self.signed_off: Mapping[str, Any] = given.get("signed_off", {})
-        self.editions: Mapping[str, str] = given.get("editions", {})
+        self.given = Given(**given)
+        self.number = self.given.sheet
         self.lines: list[Line] = []
 
-    def stated(self, *parameters: str) -> str:
+    def stated(self, *parameters: str, key: str = "") -> str:
         """The one parameter of several that is not empty: how the load is given."""
-        found = [parameter for parameter in parameters if self.parameters.get(parameter, "").strip()]
+        found = [name for name in parameters if self.parameters.get(_keyed(name, key), "").strip()]
         if len(found) != 1:
             what = " and ".join(found) or "none"
             raise self._fault("", f"exactly one of {', '.join(parameters)} is needed; stated: {what}")
@@ -85,13 +79,15 @@ class Sheet:
         """The lines that follow belong to another template of the same workbook."""
         self.template = template
 
-    def datum(self, parameter: str, symbol: str = "") -> Value:
+    def datum(self, parameter: str, symbol: str = "", key: str = "") -> Value:
         """A quantity from the inputs.
 
         Parameters: `parameter` of the template; `symbol` where one parameter may stand for several names of the
-        notation list. Raises SheetFault where it is empty, not a quantity of the name's kind, or out of its range.
+        notation list; `key` of a repeated line. Raises SheetFault where it is empty, not a quantity of the name's
+        kind, or out of its range.
         """
         entry = self._entry_of(parameter, symbol)
+        parameter = _keyed(parameter, key)
         text = self._text_of(parameter, entry.name)
         try:
             quantity = read_quantity(text, entry.kind)
@@ -100,34 +96,55 @@ class Sheet:
             raise self._fault(entry.name, f"{parameter}: {error}") from error
         return self._valued(
             DatumLine(
-                **self._identity(entry.name),
+                **self._identity(entry.name, key),
                 description=entry.description,
                 value=quantity,
                 si=coherent_number(quantity),
                 text=print_given(quantity),
                 parameter=parameter,
-                origin=self._origin(parameter),
+                origin=self.given.origin(parameter),
             )
         )
 
-    def choice(self, parameter: str, description: str) -> Choice:
-        """A word from the inputs, e.g. the method of installation; one that an earlier template made is taken."""
-        for line in self.lines:
-            if isinstance(line, ChoiceLine) and line.label == parameter and line.template != self.template:
-                return Choice(line.label, line.text)
-        text = self.parameters.get(parameter)
-        if text is None:
-            raise self._fault(parameter, f"is not a parameter; {nearest(parameter, self.parameters)}")
-        self._keep(
-            ChoiceLine(
-                **self._identity(parameter),
-                description=description,
-                parameter=parameter,
+    def brought_forward(self, parameter: str, symbol: str = "", key: str = "") -> Value:
+        """A value that another sheet worked out; alone, or where nothing was brought, the datum of that parameter."""
+        entry = self._entry_of(parameter, symbol)
+        brought = self.given.brought(_keyed(parameter, key))
+        if brought is None:
+            return self.datum(parameter, symbol, key)
+        quantity, si, text, source = brought
+        if quantity.kind != entry.kind:
+            raise self._fault(entry.name, f"{source} is {quantity.kind}, needed is {entry.kind}")
+        return self._valued(
+            BroughtForwardLine(
+                **self._identity(entry.name, key),
+                description=entry.description,
+                value=quantity,
+                si=si,
                 text=text,
-                origin=self._origin(parameter),
+                source=source,
             )
         )
-        return Choice(parameter, text)
+
+    def choice(self, parameter: str, description: str, key: str = "") -> Choice:
+        """A word from the inputs, e.g. the method of installation; one that an earlier template made is taken."""
+        label = _keyed(parameter, key)
+        for line in self.lines:
+            if isinstance(line, ChoiceLine) and line.label == label and line.template != self.template:
+                return Choice(line.label, line.text)
+        text = self.parameters.get(label)
+        if text is None:
+            raise self._fault(label, f"is not a parameter; {nearest(label, self.parameters)}")
+        self._keep(
+            ChoiceLine(
+                **self._identity(parameter, key),
+                description=description,
+                parameter=label,
+                text=text,
+                origin=self.given.origin(label),
+            )
+        )
+        return Choice(label, text)
 
     def taken(self, parameter: str) -> Value:
         """A value that an earlier template of this workbook worked out, else the datum of that parameter."""
@@ -137,9 +154,9 @@ class Sheet:
                 return Value(line.label, line.value, line.si, line.text)
         return self.datum(parameter)
 
-    def table_value(self, name: str, key: str, /, **arguments: Value | Choice | str) -> Value:
+    def table_value(self, name: str, table_key: str, /, key: str = "", **arguments: Value | Choice | str) -> Value:
         """A value looked up in a published table; `arguments` are its keys, lines of the sheet or fixed words."""
-        source = table(key)
+        source = table(table_key)
         keys: dict[str, str | Quantity] = {
             argument: value if isinstance(value, str) else value.text if isinstance(value, Choice) else value.quantity
             for argument, value in arguments.items()
@@ -152,15 +169,15 @@ class Sheet:
             raise
         except CalcbookError as error:
             raise self._fault(name, str(error)) from error
-        sign_off = self.signed_off.get(source.title)
+        other_edition = self.given.other_edition(source.header["standard"], source.header["edition"])
         return self._valued(
             TableLine(
-                **self._identity(name),
+                **self._identity(name, key),
                 description=named(name).description,
                 value=found.value,
                 si=coherent_number(found.value),
                 text=print_given(found.value),
-                table=key,
+                table=table_key,
                 arguments=tuple(_argument(argument, value) for argument, value in arguments.items()),
                 citation=Citation(
                     standard=source.header["standard"],
@@ -170,46 +187,46 @@ class Sheet:
                     row=found.row,
                     column=found.column,
                     status=found.status,
-                    signed_off=SignOff(**sign_off) if sign_off else None,
-                    remark="; ".join(filter(None, (found.remark, self._other_edition(source.header)))),
+                    signed_off=self.given.sign_off(source.title),
+                    remark="; ".join(filter(None, (found.remark, other_edition))),
                 ),
             )
         )
 
-    def step(self, name: str, formula: Formula, /, remark: str = "", **bindings: Value) -> Value:
-        """One line of calculation: `formula` with its symbols bound to lines of the sheet.
+    def step(
+        self, name: str, formula: Formula, /, remark: str = "", key: str = "", **bindings: Value | Sequence[Value]
+    ) -> Value:
+        """One line of calculation: `formula` with its symbols bound to lines of the sheet, or, in a sum, to several.
 
         Raises SheetFault where a symbol is unbound or unknown, a kind, unit or range does not fit, there is no
         finite value, or algebra and written form disagree.
         """
+        label = _keyed(name, key)
         try:
             entry = named(name)
             if entry.kind != formula.result_name.kind:
-                raise self._fault(name, f"is {entry.kind}, formula {formula.name} gives {formula.result_name.kind}")
-            value, second = formula.evaluate({symbol: bound.quantity for symbol, bound in bindings.items()})
-            adopted = self._adopted(entry)
+                raise self._fault(label, f"is {entry.kind}, formula {formula.name} gives {formula.result_name.kind}")
+            value, second = formula.evaluate({symbol: _quantities(bound) for symbol, bound in bindings.items()})
+            adopted = self.given.adopted_value(entry, label)
             final = adopted.value if adopted else value
             _check_range(entry, final)
         except SheetFault:
             raise
         except CalcbookError as error:
-            raise self._fault(name, str(error)) from error
-        tree = rename(formula.tree, {symbol: Symbol(*_label_parts(bound.label)) for symbol, bound in bindings.items()})
-        values = {bound.label: bound for bound in bindings.values()}
-        labels = [write(symbol) for symbol in symbols_of(tree)]
+            raise self._fault(label, str(error)) from error
+        tree = rename(formula.tree, {symbol: _symbol_of(bound) for symbol, bound in bindings.items()})
+        bound_by = {write(_symbol_of(bound)): bound for bound in bindings.values()}
         return self._valued(
             StepLine(
-                **self._identity(name),
+                **self._identity(name, key),
                 description=entry.description,
                 value=final,
                 si=coherent_number(final),
                 text=print_given(final) if adopted else print_calculated(final),
                 formula=formula.name,
                 written=write(tree),
-                bindings=tuple(
-                    Binding(symbol=label, rests_on=(label,), texts=(values[label].text,)) for label in labels
-                ),
-                reference=self._dated(formula.reference),
+                bindings=tuple(_binding(label, bound_by[label]) for label in map(write, symbols_of(tree))),
+                reference=self.given.dated(formula.reference),
                 second=second,
                 calculated=value,
                 calculated_text=print_calculated(value),
@@ -241,7 +258,7 @@ class Sheet:
                 utilisation=utilisation,
                 utilisation_text=print_number(utilisation),
                 verdict="met" if holds else "not met",
-                reference=self._dated(cite),
+                reference=self.given.dated(cite),
                 headroom_of=next((data[parameter] for parameter in headroom if parameter in data), ""),
             )
         )
@@ -257,7 +274,7 @@ class Sheet:
                 found=found.text,
                 allowed=tuple(allowed),
                 verdict=judge_rule(found.text, tuple(allowed)),
-                reference=self._dated(cite),
+                reference=self.given.dated(cite),
             )
         )
 
@@ -286,7 +303,7 @@ class Sheet:
 
     def conclude(self) -> None:
         """The end of the sheet: order of the criteria, governing one, headroom, open items, cautions."""
-        unused = [label for label in self.adopted if label not in {line.label for line in self.lines}]
+        unused = [label for label in self.given.adopted if label not in {line.label for line in self.lines}]
         if unused:
             steps = [line.label for line in self.lines if isinstance(line, StepLine)]
             raise self._fault(
@@ -301,26 +318,15 @@ class Sheet:
         self.lines.append(line)
         display(bundle(line), raw=True)
 
-    def _valued(self, line: DatumLine | TableLine | StepLine) -> Value:
+    def _valued(self, line: DatumLine | TableLine | BroughtForwardLine | StepLine) -> Value:
         self._keep(line)
         return Value(line.label, line.value, line.si, line.text)
 
-    def _identity(self, name: str) -> dict[str, Any]:
-        return {"sheet": self.number, "template": self.template, "name": name}
+    def _identity(self, name: str, key: str = "") -> dict[str, Any]:
+        return {"sheet": self.number, "template": self.template, "name": name, "key": key}
 
     def _fault(self, line: str, message: str) -> SheetFault:
         return SheetFault(self.number, self.template, line, message)
-
-    def _dated(self, reference: str) -> str:
-        """A reference with the edition that the basis states behind each standard: IEC 60364-4-43:2008, 433.1."""
-        for standard, edition in self.editions.items():
-            reference = reference.replace(f"{standard},", f"{standard}:{edition},")
-        return reference
-
-    def _other_edition(self, header: Mapping[str, str]) -> str:
-        """What is printed where the table in store is of another edition than the basis states."""
-        stated = self.editions.get(header["standard"], header["edition"])
-        return "" if stated == header["edition"] else f"table of edition {header['edition']}; the basis states {stated}"
 
     def _entry_of(self, parameter: str, symbol: str) -> Name:
         entries = [entry for entry in names_of_parameter(parameter) if symbol in ("", entry.name)]
@@ -335,17 +341,6 @@ class Sheet:
         if not text.strip():
             raise self._fault(name, f"{parameter} is empty; it is needed here")
         return text
-
-    def _origin(self, parameter: str) -> Origin:
-        origin = self.origins.get(parameter)
-        return Origin(**origin) if origin else Origin(file="parameters", tag=self.number, column=parameter)
-
-    def _adopted(self, entry: Name) -> Adopted | None:
-        found = self.adopted.get(entry.name)
-        if found is None:
-            return None
-        value = read_quantity(str(found["value"]), entry.kind)
-        return Adopted(entry.name, value, str(found["reason"]), str(found["by"]), str(found["date"]))
 
 
 def look_up(key: str, arguments: Mapping[str, str | Quantity]) -> Quantity:
@@ -374,6 +369,24 @@ def _argument(name: str, value: Value | Choice | str) -> Argument:
     return Argument(name=name, rests_on=value.label, text=value.text, quantity=quantity)
 
 
-def _label_parts(label: str) -> tuple[str, str]:
-    name, _, key = label.partition("[")
-    return name, key.rstrip("]")
+def _keyed(name: str, key: str) -> str:
+    return f"{name}[{key}]" if key else name
+
+
+def _quantities(bound: Value | Sequence[Value]) -> Quantity | list[Quantity]:
+    return bound.quantity if isinstance(bound, Value) else [value.quantity for value in bound]
+
+
+def _symbol_of(bound: Value | Sequence[Value]) -> Symbol:
+    """The symbol printed for what is bound: the line's own, or the name that several keyed lines share."""
+    if isinstance(bound, Value):
+        name, _, key = bound.label.partition("[")
+        return Symbol(name, key.rstrip("]"))
+    return Symbol(bound[0].label.partition("[")[0])
+
+
+def _binding(label: str, bound: Value | Sequence[Value]) -> Binding:
+    values = (bound,) if isinstance(bound, Value) else tuple(bound)
+    return Binding(
+        symbol=label, rests_on=tuple(value.label for value in values), texts=tuple(value.text for value in values)
+    )

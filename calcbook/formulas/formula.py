@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from functools import cached_property
+from typing import cast
 
 from calcbook.errors import DimensionFault
 from calcbook.records.dimension import coherent_number, in_unit
@@ -14,7 +15,7 @@ from calcbook.records.units import UNITS, kind_in_words
 from calcbook.records.written.algebra import number_function
 from calcbook.records.written.dimensions import check_dimensions
 from calcbook.records.written.evaluate import evaluate, rounding_scale
-from calcbook.records.written.tree import Node, parse, symbols_of
+from calcbook.records.written.tree import Node, expand_sums, parse, symbols_of, write
 
 
 @dataclass(frozen=True)
@@ -64,7 +65,7 @@ class Formula:
         """The notation entry of the result."""
         return named(self.result)
 
-    def check(self, quantities: Mapping[str, Quantity]) -> None:
+    def check(self, quantities: Mapping[str, Quantity | Sequence[Quantity]]) -> None:
         """Kinds and ranges of what is bound to the symbols; DimensionFault names the symbol and what it needs."""
         wanted = {entry.name for entry in self.symbols}
         if wanted != set(quantities):
@@ -72,34 +73,48 @@ class Formula:
             faults = [f"lacks {name}" for name in missing] + [f"does not know {name}" for name in extra]
             raise DimensionFault(f"formula {self.name} {' and '.join(faults)}; it takes {', '.join(sorted(wanted))}")
         for entry in self.symbols:
-            quantity = quantities[entry.name]
-            if quantity.kind != entry.kind:
-                raise DimensionFault(
-                    f"formula {self.name}: {entry.name} needs {kind_in_words(entry.kind)}, "
-                    f"got {kind_in_words(quantity.kind)} ({quantity.number:g} {quantity.unit})"
-                )
-            fault = out_of_range(entry, in_unit(coherent_number(quantity), entry.unit, entry.kind))
-            if fault:
-                raise DimensionFault(f"formula {self.name}: {fault}")
+            bound = quantities[entry.name]
+            for quantity in (bound,) if isinstance(bound, Quantity) else bound:
+                self._check_one(entry, quantity)
 
-    def evaluate(self, quantities: Mapping[str, Quantity]) -> tuple[Quantity, float]:
+    def _check_one(self, entry: Name, quantity: Quantity) -> None:
+        if quantity.kind != entry.kind:
+            raise DimensionFault(
+                f"formula {self.name}: {entry.name} needs {kind_in_words(entry.kind)}, "
+                f"got {kind_in_words(quantity.kind)} ({quantity.number:g} {quantity.unit})"
+            )
+        fault = out_of_range(entry, in_unit(coherent_number(quantity), entry.unit, entry.kind))
+        if fault:
+            raise DimensionFault(f"formula {self.name}: {fault}")
+
+    def evaluate(self, quantities: Mapping[str, Quantity | Sequence[Quantity]]) -> tuple[Quantity, float]:
         """The result by the algebra's function, and beside it the written form's own number (coherent unit).
 
         Raises DimensionFault where kinds or ranges do not fit or where the two numbers differ by more than 1e-12 of
         the line's largest term, EvaluationFault where there is no finite real number.
         """
         self.check(quantities)
-        values = {entry.name: coherent_number(quantities[entry.name]) for entry in self.symbols}
+        values = {entry.name: _coherent(quantities[entry.name]) for entry in self.symbols}
         second = evaluate(self.tree, values)
-        first = float(number_function(self.written)(*values.values()))
+        first = self._by_algebra(values)
         allowed = 1e-12 * rounding_scale(self.tree, values)
         if abs(first - second) > allowed:
             raise DimensionFault(f"formula {self.name}: algebra gives {first!r}, the written form {second!r}")
         return in_unit(first, self.result_name.unit, self.result_name.kind), second
 
-    def example_inputs(self) -> dict[str, Quantity]:
-        """The inputs of the worked example as quantities."""
-        return {name: read_quantity(text, named(name).kind) for name, text in self.example.inputs.items()}
+    def _by_algebra(self, values: Mapping[str, float | list[float]]) -> float:
+        """The number of the sympy expression; a sum over lines is written out term by term first."""
+        counts = {name: len(value) for name, value in values.items() if isinstance(value, list)}
+        if not counts:
+            return float(number_function(self.written)(*values.values()))
+        written_out = expand_sums(self.tree, counts)
+        terms = {f"{name}[{at}]": term for name in counts for at, term in enumerate(cast("list[float]", values[name]))}
+        flat = {**values, **terms}
+        return float(number_function(written_out)(*(flat[write(symbol)] for symbol in symbols_of(written_out))))
+
+    def example_inputs(self) -> dict[str, Quantity | list[Quantity]]:
+        """The inputs of the worked example as quantities; several for a symbol of a sum, parted by "; "."""
+        return {name: _example(text, named(name).kind) for name, text in self.example.inputs.items()}
 
     def page(self) -> str:
         """The formula's page, made from the data above: purpose, form, symbols, range, source, example."""
@@ -115,3 +130,14 @@ class Formula:
         lines.append(f"Example   {inputs} -> {self.result} = {self.example.result} ({self.example.source})")
         lines.append(f"Published {'; '.join(self.published) or 'no published example'}")
         return "\n".join(lines)
+
+
+def _coherent(bound: Quantity | Sequence[Quantity]) -> float | list[float]:
+    if isinstance(bound, Quantity):
+        return coherent_number(bound)
+    return [coherent_number(quantity) for quantity in bound]
+
+
+def _example(text: str, kind: str) -> Quantity | list[Quantity]:
+    quantities = [read_quantity(part, kind) for part in text.split("; ")]
+    return quantities if len(quantities) > 1 else quantities[0]

@@ -82,13 +82,13 @@ def _binary(operator: str, left: Any, right: Any) -> Any:
 
 
 @cache
-def number_function(form: str) -> Callable[..., float]:
+def number_function(form: Node | str) -> Callable[..., float]:
     """The expression as a function of floats, by Python's `math`, its arguments in the order of `symbols_of`.
 
     numpy would differ in the last bit between processors. The text that sympy compiles is made by sympy from the
     expression of a form that was parsed and bounded; no text of an inputs file reaches it.
     """
-    node = parse(form)
+    node = parse(form) if isinstance(form, str) else form
     arguments = [symbol(write(part)) for part in symbols_of(node)]
     function: Callable[..., float] = sympy.lambdify(arguments, expression(node), modules="math")
     return function

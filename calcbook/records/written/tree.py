@@ -310,6 +310,31 @@ def rename(node: Node, names: dict[str, Symbol]) -> Node:
     return node
 
 
+def expand_sums(node: Node, counts: dict[str, int]) -> Node:
+    """The same tree with each sum( ) written out: its terms have the symbols P[0], P[1], ... for P of two lines.
+
+    Parameters: `counts` by name of the symbols that stand for several lines, at least one line each.
+    """
+    match node:
+        case Call("sum", (body,)):
+            keyed = [symbol.name for symbol in symbols_of(body) if symbol.name in counts]
+            terms = [
+                Bracket(rename(body, {name: Symbol(name, str(index)) for name in keyed}))
+                for index in range(counts[keyed[0]])
+            ]
+            total: Node = terms[0]
+            for term in terms[1:]:
+                total = Binary("+", total, term)
+            return Bracket(total)
+        case Negative(body) | Bracket(body):
+            return replace(node, body=expand_sums(body, counts))
+        case Binary(_, left, right) | Comparison(_, left, right):
+            return replace(node, left=expand_sums(left, counts), right=expand_sums(right, counts))
+        case Call(_, arguments):
+            return replace(node, arguments=tuple(expand_sums(argument, counts) for argument in arguments))
+    return node
+
+
 _LEVEL = {"+": 1, "-": 1, "*": 2, "/": 2, "^": 4}
 
 
