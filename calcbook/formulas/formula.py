@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 from typing import cast
 
@@ -15,7 +15,7 @@ from calcbook.records.units import UNITS, kind_in_words
 from calcbook.records.written.algebra import number_function
 from calcbook.records.written.dimensions import check_dimensions
 from calcbook.records.written.evaluate import evaluate, rounding_scale
-from calcbook.records.written.tree import Node, expand_sums, parse, symbols_of, write
+from calcbook.records.written.tree import Call, Node, Symbol, expand_sums, parse, spread, symbols_of, walk, write
 
 
 @dataclass(frozen=True)
@@ -65,15 +65,28 @@ class Formula:
         """The notation entry of the result."""
         return named(self.result)
 
+    def spans(self, name: str) -> bool:
+        """Whether a symbol stands alone under min( ) or max( ), where it may be bound to several lines."""
+        return any(
+            isinstance(part, Call) and part.function in ("min", "max") and part.arguments == (Symbol(name),)
+            for part in walk(parse(self.written))
+        )
+
+    def over(self, counts: Mapping[str, int]) -> Formula:
+        """The same formula with `min(x)` and `max(x)` written out: min(x[1], x[2]) where x stands for two lines."""
+        keyed = {name: [Symbol(name, str(at + 1)) for at in range(count)] for name, count in counts.items()}
+        return replace(self, written=write(spread(parse(self.written), keyed)))
+
     def check(self, quantities: Mapping[str, Quantity | Sequence[Quantity]]) -> None:
         """Kinds and ranges of what is bound to the symbols; DimensionFault names the symbol and what it needs."""
-        wanted = {entry.name for entry in self.symbols}
+        entries = {write(symbol): named(symbol.name) for symbol in symbols_of(parse(self.written))}
+        wanted = set(entries)
         if wanted != set(quantities):
             missing, extra = sorted(wanted - set(quantities)), sorted(set(quantities) - wanted)
             faults = [f"lacks {name}" for name in missing] + [f"does not know {name}" for name in extra]
             raise DimensionFault(f"formula {self.name} {' and '.join(faults)}; it takes {', '.join(sorted(wanted))}")
-        for entry in self.symbols:
-            bound = quantities[entry.name]
+        for label, entry in entries.items():
+            bound = quantities[label]
             for quantity in (bound,) if isinstance(bound, Quantity) else bound:
                 self._check_one(entry, quantity)
 
@@ -94,12 +107,14 @@ class Formula:
         the line's largest term, EvaluationFault where there is no finite real number.
         """
         self.check(quantities)
-        values = {entry.name: _coherent(quantities[entry.name]) for entry in self.symbols}
+        values = {label: _coherent(quantities[label]) for label in map(write, symbols_of(self.tree))}
         second = evaluate(self.tree, values)
         first = self._by_algebra(values)
         allowed = 1e-12 * rounding_scale(self.tree, values)
         if abs(first - second) > allowed:
             raise DimensionFault(f"formula {self.name}: algebra gives {first!r}, the written form {second!r}")
+        if abs(first) <= allowed:
+            first = 0.0  # what is left of terms that cancel is rounding, and prints as nothing
         return in_unit(first, self.result_name.unit, self.result_name.kind), second
 
     def _by_algebra(self, values: Mapping[str, float | list[float]]) -> float:

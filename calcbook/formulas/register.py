@@ -5,15 +5,18 @@ from __future__ import annotations
 from functools import cache
 from types import ModuleType
 
-from calcbook.formulas import cable_current, three_phase
+from calcbook.formulas import cable_current, demand, three_phase
 from calcbook.formulas.cable_current_derivation import CABLE_CURRENT
+from calcbook.formulas.demand_derivation import DEMAND
 from calcbook.formulas.derivation import Derivation
 from calcbook.formulas.formula import Formula
 from calcbook.formulas.three_phase_derivation import THREE_PHASE_POWER
 
-_MODULES: tuple[ModuleType, ...] = (three_phase, cable_current)
+_MODULES: tuple[ModuleType, ...] = (three_phase, cable_current, demand)
 
-DERIVATIONS: dict[str, Derivation] = {derivation.key: derivation for derivation in (THREE_PHASE_POWER, CABLE_CURRENT)}
+DERIVATIONS: dict[str, Derivation] = {
+    derivation.key: derivation for derivation in (THREE_PHASE_POWER, CABLE_CURRENT, DEMAND)
+}
 
 
 @cache

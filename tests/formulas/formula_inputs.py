@@ -12,8 +12,10 @@ from calcbook.records.dimension import coherent_number
 from calcbook.records.notation import Name, named
 from calcbook.records.quantity import Quantity, read_quantity
 from calcbook.records.written.evaluate import Arithmetic, evaluate_with, mpmath_arithmetic
+from calcbook.records.written.tree import Call, symbols_of, walk
 
 PRECISE = mpmath_arithmetic(30)
+Drawn = dict[str, Quantity | list[Quantity]]
 
 
 def numbers(entry: Name) -> st.SearchStrategy[float]:
@@ -21,7 +23,7 @@ def numbers(entry: Name) -> st.SearchStrategy[float]:
     if entry.kind == "count":
         return st.integers(1, 20).map(float)
     if not entry.range:
-        return st.floats(-1e4, 1e4)
+        return st.floats(-1e4, 1e4).filter(lambda number: number == 0 or abs(number) > 1e-6)
     if entry.range.startswith(">"):
         return st.floats(max(1e-3, float(entry.range.lstrip(">="))), 1e4)
     low, high = (float(part) for part in entry.range[1:-1].split(","))
@@ -30,9 +32,18 @@ def numbers(entry: Name) -> st.SearchStrategy[float]:
     )
 
 
-def inputs(formula: Formula) -> st.SearchStrategy[dict[str, Quantity]]:
-    """Quantities for every symbol of a formula, the conductor warmer than its surroundings."""
-    drawn = {entry.name: numbers(entry).map(_quantity(entry)) for entry in formula.symbols}
+def summed(formula: Formula) -> set[str]:
+    """The symbols of a formula that stand for several lines: those inside sum( )."""
+    sums = (node for node in walk(formula.tree) if isinstance(node, Call) and node.function == "sum")
+    return {symbol.name for node in sums for symbol in symbols_of(node)}
+
+
+def inputs(formula: Formula) -> st.SearchStrategy[Drawn]:
+    """Quantities for every symbol of a formula, one to four in a sum, the conductor warmer than its surroundings."""
+    drawn: dict[str, st.SearchStrategy[Any]] = {}
+    for entry in formula.symbols:
+        one = numbers(entry).map(_quantity(entry))
+        drawn[entry.name] = st.lists(one, min_size=1, max_size=4) if entry.name in summed(formula) else one
     return st.fixed_dictionaries(drawn).filter(_is_physical)
 
 
@@ -40,10 +51,11 @@ def _quantity(entry: Name) -> Any:
     return lambda number: Quantity(number, entry.unit, entry.kind)
 
 
-def _is_physical(drawn: dict[str, Quantity]) -> bool:
-    if not {"theta_max", "theta_a"} <= set(drawn):
+def _is_physical(drawn: Drawn) -> bool:
+    ambient, greatest = drawn.get("theta_a"), drawn.get("theta_max")
+    if not (isinstance(ambient, Quantity) and isinstance(greatest, Quantity)):
         return True
-    return drawn["theta_a"].number < drawn["theta_max"].number - 0.1
+    return ambient.number < greatest.number - 0.1
 
 
 def result(formula: Formula, **texts: str) -> float:
@@ -51,12 +63,22 @@ def result(formula: Formula, **texts: str) -> float:
     return formula.evaluate({name: read_quantity(text, named(name).kind) for name, text in texts.items()})[0].number
 
 
-def coherent(formula: Formula, drawn: dict[str, Quantity]) -> dict[str, float]:
+def coherent(formula: Formula, drawn: Drawn) -> dict[str, float | list[float]]:
     """The numbers a formula is evaluated with."""
-    return {entry.name: coherent_number(drawn[entry.name]) for entry in formula.symbols}
+    return {
+        name: coherent_number(bound) if isinstance(bound, Quantity) else [coherent_number(one) for one in bound]
+        for name, bound in drawn.items()
+    }
 
 
-def precise_result(formula: Formula, drawn: dict[str, Quantity], arithmetic: Arithmetic = PRECISE) -> float:
+def precise_result(formula: Formula, drawn: Drawn, arithmetic: Arithmetic = PRECISE) -> float:
     """The written form at 30 digits, in coherent units."""
-    values = {name: arithmetic.number(str(Decimal(number))) for name, number in coherent(formula, drawn).items()}
+    values = {
+        name: _exact(arithmetic, bound) if isinstance(bound, float) else [_exact(arithmetic, one) for one in bound]
+        for name, bound in coherent(formula, drawn).items()
+    }
     return float(evaluate_with(arithmetic, formula.tree, values))
+
+
+def _exact(arithmetic: Arithmetic, number: float) -> Any:
+    return arithmetic.number(str(Decimal(number)))

@@ -47,7 +47,11 @@ def test_a_change_of_base_units_changes_the_result_by_its_dimension(name: str, d
     formula = formulas()[name]
     values = coherent(formula, data.draw(inputs(formula)))
     sizes = {base: data.draw(_SIZES) for base in _BASES}
-    resized = {entry.name: values[entry.name] * _scale(dimension(entry.unit), sizes) for entry in formula.symbols}
+    scales = {entry.name: _scale(dimension(entry.unit), sizes) for entry in formula.symbols}
+    resized = {
+        name: value * scales[name] if isinstance(value, float) else [one * scales[name] for one in value]
+        for name, value in values.items()
+    }
     expected = evaluate(formula.tree, values) * _scale(dimension(formula.result_name.unit), sizes)
     allowed = 1e-12 * rounding_scale(formula.tree, resized)
     assert abs(evaluate(formula.tree, resized) - expected) <= allowed
