@@ -16,7 +16,7 @@ from calcbook.inputs.refusals import report_refused_basis, report_refused_files
 from calcbook.inputs.settings import TAGGED, Settings, read_settings
 from calcbook.inputs.source import read_source
 from calcbook.inputs.text import nearest_name, shown
-from calcbook.records.project import Board, Datum, Project
+from calcbook.records.project import Board, Datum, Project, Source
 
 
 def read_project(folder: Path) -> Project:
@@ -45,6 +45,7 @@ def read_project(folder: Path) -> Project:
         editions=said.editions,
         boards=tuple(Board(name, data[f"boards.{name}"]) for name in said.names_of("boards")),
         circuits=tuple(replace(circuit, adopted=taken.of(circuit.tag)) for circuit in found.found),
+        sources=tuple(Source(name, data[f"sources.{name}"]) for name in said.names_of("sources")),
         signed_off=said.signed_off,
         unused=_unused(folder, said, found),
     )

@@ -92,6 +92,14 @@ class Board:
 
 
 @dataclass(frozen=True)
+class Source:
+    """One table `[sources.TAG]`; `data` by key."""
+
+    tag: str
+    data: Mapping[str, Datum] = field(default_factory=dict)
+
+
+@dataclass(frozen=True)
 class Project:
     """Everything the inputs say, validated.
 
@@ -105,22 +113,37 @@ class Project:
     editions: Mapping[str, str]
     boards: tuple[Board, ...]
     circuits: tuple[Circuit, ...]
+    sources: tuple[Source, ...] = ()
     signed_off: Mapping[str, SignOff] = field(default_factory=dict)
     unused: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True)
 class SheetPlan:
-    """One sheet to be made: its number, the templates in order, and what is handed to them.
+    """One workbook to be made: its sheet's number, the templates in order, and what is handed to them.
 
-    `parameters` by template parameter name, all texts as entered; `given` is the reserved parameter of the same name.
+    `parameters` by template parameter name, texts as entered (repeated ones as a dict of texts by key); `given` is the
+    reserved parameter of the same name. A board's sheet has two workbooks: `part` is "demand" or "supply". `rests_on`
+    names, by parameter, the workbook and the line whose value is brought forward.
     """
 
     number: str
     title: str
     templates: tuple[str, ...]
-    parameters: Mapping[str, str]
+    parameters: Mapping[str, str | Mapping[str, Mapping[str, str]]]
     given: Mapping[str, object]
+    part: str = ""
+    rests_on: Mapping[str, tuple[str, str]] = field(default_factory=dict)
+
+    @property
+    def name(self) -> str:
+        """The name of the workbook: the sheet's number, with the part behind it where there is one."""
+        return workbook_name(self.number, self.part)
+
+
+def workbook_name(number: str, part: str) -> str:
+    """The name of a workbook: "C-014", "MB~demand"."""
+    return f"{number}~{part}" if part else number
 
 
 @dataclass(frozen=True)

@@ -5,6 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Literal
 
+from calcbook.records.project import workbook_name
 from calcbook.records.trace import Trace
 
 
@@ -31,3 +32,9 @@ class SheetResult:
     workbook: str
     trace: Trace
     failure: Failure | None = None
+    part: str = ""
+
+    @property
+    def name(self) -> str:
+        """The name of the workbook: the sheet's number, with the part behind it where there is one."""
+        return workbook_name(self.number, self.part)

@@ -5,8 +5,9 @@ from __future__ import annotations
 import json
 import logging
 import tempfile
-from collections.abc import Callable, Iterator
+from collections.abc import Callable, Iterator, Mapping
 from contextlib import contextmanager
+from dataclasses import replace
 from pathlib import Path
 from typing import Any, Literal
 
@@ -17,7 +18,8 @@ from nbformat import NotebookNode, from_dict
 from papermill.engines import papermill_engines
 from papermill.exceptions import PapermillExecutionError
 
-from calcbook.errors import CalcbookError, TemplateFault, WorkspaceFault
+from calcbook.errors import CalcbookError, SheetFault, TemplateFault, WorkspaceFault
+from calcbook.records.line import Valued
 from calcbook.records.project import Plan, SheetPlan
 from calcbook.records.result import Failure, SheetResult
 from calcbook.records.trace import SCHEMA_VERSION, Trace, canonical_json, trace_of_notebook
@@ -44,15 +46,41 @@ def execute_all(
     engine: EngineName = "warm",
     on_done: Callable[[SheetResult], None] = lambda result: None,
 ) -> tuple[SheetResult, ...]:
-    """Execute every sheet of a plan, in order; one that fails does not stop the others.
+    """Execute every sheet of a plan, each as soon as what it rests on is done; one that fails stops none but those.
 
     Parameters: as for `execute_sheet`; `on_done` is called with each result as soon as it is there.
     """
-    results = []
-    for sheet in plan.sheets:
-        results.append(execute_sheet(sheet, project_folder, engine))
-        on_done(results[-1])
-    return tuple(results)
+    done: dict[str, SheetResult] = {}
+    waiting = list(plan.sheets)
+    while waiting:
+        sheet = next((sheet for sheet in waiting if _sources(sheet) <= done.keys()), None)
+        if sheet is None:
+            raise WorkspaceFault(f"the sheets {', '.join(sheet.name for sheet in waiting)} rest on each other")
+        waiting.remove(sheet)
+        done[sheet.name] = _execute_with(done, sheet, project_folder, engine)
+        on_done(done[sheet.name])
+    return tuple(done[sheet.name] for sheet in plan.sheets)
+
+
+def _sources(sheet: SheetPlan) -> set[str]:
+    return {workbook for workbook, _ in sheet.rests_on.values()}
+
+
+def _execute_with(
+    done: Mapping[str, SheetResult], sheet: SheetPlan, project_folder: Path, engine: EngineName
+) -> SheetResult:
+    """Execute a sheet with what it brings forward from sheets that are done; fail it where one of them failed."""
+    brought = {}
+    for parameter, (workbook, label) in sheet.rests_on.items():
+        line = next((line for line in done[workbook].trace.lines if line.label == label), None)
+        if done[workbook].outcome == "failed" or not isinstance(line, Valued):
+            why = "failed" if done[workbook].outcome == "failed" else f"has no value {label}"
+            return _failed(sheet, SheetFault(sheet.number, "", parameter, f"rests on {workbook}, which {why}"))
+        value = line.value
+        brought[parameter] = {"number": value.number, "unit": value.unit, "kind": value.kind, "si": line.si,
+                              "text": line.text, "source": line.id}  # fmt: skip
+    given = {**sheet.given, "brought_forward": brought}
+    return execute_sheet(replace(sheet, given=given), project_folder, engine)
 
 
 def execute_sheet(plan: SheetPlan, project_folder: Path, engine: EngineName = "warm") -> SheetResult:
@@ -72,8 +100,7 @@ def execute_sheet(plan: SheetPlan, project_folder: Path, engine: EngineName = "w
     except WorkspaceFault:
         raise
     except CalcbookError as error:
-        failure = Failure(type(error).__name__, str(error), 0, "")
-        return SheetResult(plan.number, plan.title, "failed", "", _no_lines(plan), failure)
+        return _failed(plan, error)
 
 
 def _parameters(plan: SheetPlan) -> dict[str, Any]:
@@ -129,7 +156,7 @@ def _result(plan: SheetPlan, workbook: NotebookNode, failed: PapermillExecutionE
             ", ".join(plan.templates), f"displays a record that is no line of a sheet: {first}"
         ) from None
     outcome: Literal["executed", "failed"] = "failed" if failure else "executed"
-    return SheetResult(plan.number, plan.title, outcome, canonical_text(workbook), trace, failure)
+    return SheetResult(plan.number, plan.title, outcome, canonical_text(workbook), trace, failure, plan.part)
 
 
 def _failure(workbook: NotebookNode, failed: PapermillExecutionError | None) -> Failure | None:
@@ -148,5 +175,8 @@ def _failure(workbook: NotebookNode, failed: PapermillExecutionError | None) -> 
     )
 
 
-def _no_lines(plan: SheetPlan) -> Trace:
-    return Trace(SCHEMA_VERSION, plan.number, plan.title, plan.templates, ())
+def _failed(plan: SheetPlan, error: CalcbookError) -> SheetResult:
+    """The result of a sheet that could not even be started: no lines."""
+    failure = Failure(type(error).__name__, str(error), 0, "")
+    trace = Trace(SCHEMA_VERSION, plan.number, plan.title, plan.templates, ())
+    return SheetResult(plan.number, plan.title, "failed", "", trace, failure, plan.part)

@@ -1,6 +1,7 @@
 """The parameters a template declares: one typed, described parameter a line of its parameters cell.
 
     length: str = "85 m"  # route length, source end to load end
+    loads: dict = {"C-001": {"load_current": "20 A"}}  # a repeated group: texts by name, by key
     given: dict = {}  # origin and status of data, adopted values, values brought forward
 
 A line that papermill would read otherwise than Python does is refused, so that `papermill --help-notebook` and
@@ -84,7 +85,8 @@ def _read_one(template: str, statement: ast.stmt, lines: list[str], description:
     if name == GIVEN and (kind, default) != ("dict", "{}"):
         raise _fault(template, number, f'"{GIVEN}" is reserved: {_GIVEN_FORM}')
     is_text = isinstance(statement.value, ast.Constant) and isinstance(statement.value.value, str)
-    if name != GIVEN and (kind != "str" or not is_text):
+    is_repeated = kind == "dict" and isinstance(statement.value, ast.Dict)
+    if name != GIVEN and not is_repeated and (kind != "str" or not is_text):
         raise _fault(template, number, f'"{name}" must be a text with its unit in it: {_FORM}')
     if not description:
         raise _fault(template, number, f'"{name}" has no description: {_FORM}')
