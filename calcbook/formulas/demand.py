@@ -180,3 +180,25 @@ NOMINAL_TO_NEUTRAL = Formula(
     citation="star connection, sheet D-three-phase-power",
     example=Example({"U_n": "400 V"}, "231 V"),
 )
+
+#: of a two-line load: active and reactive part in the line that leads, then in the line that follows
+TWO_LINE_PARTS = (
+    (FIRST_LINE_ACTIVE_PART, FIRST_LINE_REACTIVE_PART),
+    (SECOND_LINE_ACTIVE_PART, SECOND_LINE_REACTIVE_PART),
+)
+#: current of the board in a line -> formula of the sum over its circuits, and of a line that none uses
+SUM_OF_PARTS = {"I_P": LINE_ACTIVE, "I_Q": LINE_REACTIVE, "I_3": LINE_HARMONIC}
+NO_PARTS = {"I_P": NO_ACTIVE, "I_Q": NO_REACTIVE, "I_3": NO_HARMONIC}
+_PAIRS = {"L1L2": ("L1", "L2"), "L2L3": ("L2", "L3"), "L1L3": ("L3", "L1")}
+
+
+def lines_of(phases: str) -> tuple[str, ...]:
+    """The lines of a circuit or board, each followed by the one that lags it: ("L3", "L1") of "L1L3"."""
+    return _PAIRS.get(phases, tuple(line for line in ("L1", "L2", "L3") if line in phases))
+
+
+def next_lines(line: str) -> tuple[str, str, str]:
+    """A line, the one that lags it by a third of a period, and the one after that."""
+    start = int(line[1]) - 1
+    first, second, third = (f"L{(start + step) % 3 + 1}" for step in range(3))
+    return first, second, third

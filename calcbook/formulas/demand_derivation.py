@@ -1,4 +1,4 @@
-"""Parts of phasors against each line's own voltage, and the neutral current as the phasor sum of three lines."""
+"""Parts of phasors against each line's own voltage, the neutral current as their sum, the voltage between two lines."""
 
 from __future__ import annotations
 
@@ -8,7 +8,7 @@ from typing import Any
 
 import sympy
 
-from calcbook.formulas import demand
+from calcbook.formulas import board, demand
 from calcbook.formulas.derivation import Derivation, Stage
 from calcbook.formulas.formula import Formula
 from calcbook.records.written.algebra import expression
@@ -32,6 +32,13 @@ def _neutral_part(*, reactive: bool) -> Any:
     return -sympy.im(total) if reactive else sympy.re(total)
 
 
+def _between_lines() -> Any:
+    """The modulus of the difference of two phasors, the second turned by a third of a period."""
+    first, second = (expression(f"U_re{line} + U_im{line}*j").subs(expression("j"), sympy.I) for line in (1, 2))
+    difference = sympy.expand(first - second * sympy.exp(-sympy.I * _TURN), complex=True)
+    return sympy.sqrt(sympy.expand(sympy.re(difference) ** 2 + sympy.im(difference) ** 2))
+
+
 def _stage(formula: Formula, reason: str, derived: Callable[[], Any]) -> Stage:
     return Stage(formula.name, formula.result, formula.written, reason, derived=derived, formula=formula.name)
 
@@ -51,7 +58,7 @@ _PARTS = (
 
 DEMAND = Derivation(
     key="demand",
-    title="Currents of a board as phasors",
+    title="Currents and voltages of a board as phasors",
     stages=(
         *(
             _stage(formula, reason, partial(_phasor_part, lag, reactive=reactive))
@@ -63,5 +70,10 @@ DEMAND = Derivation(
             partial(_neutral_part, reactive=False),
         ),
         _stage(demand.NEUTRAL_REACTIVE, "the same, at right angles", partial(_neutral_part, reactive=True)),
+        _stage(
+            board.VOLTAGE_BETWEEN_LINES,
+            "two lines: the voltage between them is the difference of their phasors, a third of a period apart",
+            _between_lines,
+        ),
     ),
 )

@@ -36,7 +36,7 @@ def read_network(project: Project) -> Network:
     """The network of a project.
 
     Raises InputFaults naming the tags: an origin that is neither source nor board, a board with two feeds or none, a
-    loop, a board that the origin does not reach, phases that a board lacks.
+    loop, a board that the origin does not reach or that feeds nothing, phases that a board lacks, a load at a source.
     """
     faults: list[Fault] = []
     tags = [board.tag for board in project.boards]
@@ -55,6 +55,8 @@ def read_network(project: Project) -> Network:
     boards = () if loop else _downwards(origin, tags, ways)
     if not loop:
         faults += [_not_reached(tag, origin, feed) for tag in tags if tag not in boards and tag != origin]
+    faults += [_without_circuits(tag) for tag in boards if not ways[tag]]
+    faults += [fault for source in project.sources for fault in _loads_of(source.tag, project)]
     network = Network(origin, boards, feed, ways)
     faults += [fault for tag in boards for circuit in ways[tag] for fault in _lacking_phases(network, tag, circuit)]
     if faults:
@@ -65,6 +67,11 @@ def read_network(project: Project) -> Network:
 def is_feeder(circuit: Circuit) -> bool:
     """Whether a circuit leads to a board."""
     return "to" in circuit.data
+
+
+def board_of(circuit: Circuit) -> str:
+    """The board or source that a circuit leaves."""
+    return _text(circuit, "from")
 
 
 def _text(circuit: Circuit, column: str) -> str:
@@ -110,6 +117,16 @@ def _not_reached(tag: str, origin: str, feed: Mapping[str, Circuit]) -> Fault:
     return Fault(
         _SETTINGS, f"[boards.{tag}]", f"board {tag} has no feed: {why}; name it in the column to of its feeder"
     )
+
+
+def _without_circuits(tag: str) -> Fault:
+    return Fault(_SETTINGS, f"[boards.{tag}]", f"board {tag} feeds nothing: no circuit has it in the column from")
+
+
+def _loads_of(source: str, project: Project) -> list[Fault]:
+    """A source feeds boards: the voltage of a load is counted from a board."""
+    found = [circuit.tag for circuit in project.circuits if board_of(circuit) == source and not is_feeder(circuit)]
+    return [Fault(_CIRCUITS, f"{tag}, from", f"{source} is a source, and a source feeds boards only") for tag in found]
 
 
 def _lacking_phases(network: Network, board: str, circuit: Circuit) -> list[Fault]:
