@@ -41,7 +41,6 @@ from calcbook.records.quantity import Quantity, read_quantity
 from calcbook.records.recompute import judge, judge_rule
 from calcbook.records.trace import line_from_json, line_to_json
 from calcbook.records.value import Choice, Comparison, Value
-from calcbook.records.written.algebra import number_function
 from calcbook.records.written.tree import Symbol, rename, symbols_of, write
 from calcbook.reference.table import table, tables
 
@@ -107,8 +106,14 @@ class Sheet:
         )
 
     def brought_forward(self, parameter: str, symbol: str = "", key: str = "") -> Value:
-        """A value that another sheet worked out; alone, or where nothing was brought, the datum of that parameter."""
+        """A value that another sheet worked out; alone, or where nothing was brought, the datum of that parameter.
+
+        One that an earlier template of this workbook brought is taken.
+        """
         entry = self._entry_of(parameter, symbol)
+        for line in self.lines:
+            if line.label == _keyed(entry.name, key) and line.template != self.template and isinstance(line, Valued):
+                return Value(line.label, line.value, line.si, line.text)
         brought = self.given.brought(_keyed(parameter, key))
         if brought is None:
             return self.datum(parameter, symbol, key)
@@ -155,7 +160,14 @@ class Sheet:
         return self.datum(parameter)
 
     def table_value(self, name: str, table_key: str, /, key: str = "", **arguments: Value | Choice | str) -> Value:
-        """A value looked up in a published table; `arguments` are its keys, lines of the sheet or fixed words."""
+        """A value looked up in a published table; `arguments` are its keys, lines of the sheet or fixed words.
+
+        The same look-up by an earlier template of this workbook is taken.
+        """
+        bound = tuple(_argument(argument, value) for argument, value in arguments.items())
+        earlier = self._looked_up_before(_keyed(name, key), table_key, bound)
+        if earlier is not None:
+            return earlier
         source = table(table_key)
         keys: dict[str, str | Quantity] = {
             argument: value if isinstance(value, str) else value.text if isinstance(value, Choice) else value.quantity
@@ -178,7 +190,7 @@ class Sheet:
                 si=coherent_number(found.value),
                 text=print_given(found.value),
                 table=table_key,
-                arguments=tuple(_argument(argument, value) for argument, value in arguments.items()),
+                arguments=bound,
                 citation=Citation(
                     standard=source.header["standard"],
                     edition=source.header["edition"],
@@ -193,10 +205,18 @@ class Sheet:
             )
         )
 
+    def _looked_up_before(self, label: str, table_key: str, arguments: tuple[Argument, ...]) -> Value | None:
+        for line in self.lines:
+            if not isinstance(line, TableLine) or line.template == self.template:
+                continue
+            if (line.label, line.table, line.arguments) == (label, table_key, arguments):
+                return Value(line.label, line.value, line.si, line.text)
+        return None
+
     def step(
         self, name: str, formula: Formula, /, remark: str = "", key: str = "", **bindings: Value | Sequence[Value]
     ) -> Value:
-        """One line of calculation: `formula` with its symbols bound to lines of the sheet, or, in a sum, to several.
+        """One line of calculation: `formula` with its symbols bound to lines of the sheet, several in sum, min or max.
 
         Raises SheetFault where a symbol is unbound or unknown, a kind, unit or range does not fit, there is no
         finite value, or algebra and written form disagree.
@@ -206,6 +226,7 @@ class Sheet:
             entry = named(name)
             if entry.kind != formula.result_name.kind:
                 raise self._fault(label, f"is {entry.kind}, formula {formula.name} gives {formula.result_name.kind}")
+            formula, bindings = _written_out(formula, bindings)
             value, second = formula.evaluate({symbol: _quantities(bound) for symbol, bound in bindings.items()})
             adopted = self.given.adopted_value(entry, label)
             final = adopted.value if adopted else value
@@ -241,9 +262,10 @@ class Sheet:
         """What must hold, as an inequality.
 
         `headroom` names parameters; the greatest change is worked out of the first of them that is a datum here.
+        Temperatures are compared as (left <= right).over(ambient), sizes as (left >= right).of_sizes().
         """
-        left, right = comparison.left, comparison.right
-        utilisation, holds = judge(comparison.operator, left.si, right.si)
+        left, right, above = comparison.left, comparison.right, comparison.above
+        utilisation, holds = judge(comparison.operator, left.si, right.si, 0.0 if above is None else above.si)
         left_text, right_text = tell_apart(left.quantity, left.text, right.quantity, right.text)
         data = {line.parameter: line.label for line in self.lines if isinstance(line, DatumLine)}
         self._keep(
@@ -260,6 +282,8 @@ class Sheet:
                 verdict="met" if holds else "not met",
                 reference=self.given.dated(cite),
                 headroom_of=next((data[parameter] for parameter in headroom if parameter in data), ""),
+                above="" if above is None else above.label,
+                governs=comparison.governs,
             )
         )
 
@@ -352,7 +376,6 @@ def prime() -> None:
     """Fill the caches that every sheet would fill: formulas compiled, tables read, schemas built."""
     for formula in formulas().values():
         formula.evaluate(formula.example_inputs())
-        number_function(formula.written)
     tables()
 
 
@@ -371,6 +394,18 @@ def _argument(name: str, value: Value | Choice | str) -> Argument:
 
 def _keyed(name: str, key: str) -> str:
     return f"{name}[{key}]" if key else name
+
+
+def _written_out(
+    formula: Formula, bindings: Mapping[str, Value | Sequence[Value]]
+) -> tuple[Formula, dict[str, Value | Sequence[Value]]]:
+    """The formula with min( ) and max( ) over several lines written out, each line bound to a symbol of its own."""
+    found = dict(bindings)
+    extremes = {name: lines for name, lines in bindings.items() if not isinstance(lines, Value) and formula.spans(name)}
+    for name, lines in extremes.items():
+        del found[name]
+        found |= {f"{name}[{at}]": line for at, line in enumerate(lines, start=1)}
+    return (formula.over({name: len(lines) for name, lines in extremes.items()}) if extremes else formula), found
 
 
 def _quantities(bound: Value | Sequence[Value]) -> Quantity | list[Quantity]:

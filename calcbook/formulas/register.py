@@ -5,17 +5,36 @@ from __future__ import annotations
 from functools import cache
 from types import ModuleType
 
-from calcbook.formulas import cable_current, demand, three_phase
+from calcbook.formulas import (
+    board,
+    cable_current,
+    conductor_impedance,
+    demand,
+    feeder_drop,
+    neutral,
+    three_phase,
+    voltage_drop,
+)
 from calcbook.formulas.cable_current_derivation import CABLE_CURRENT
 from calcbook.formulas.demand_derivation import DEMAND
 from calcbook.formulas.derivation import Derivation
 from calcbook.formulas.formula import Formula
 from calcbook.formulas.three_phase_derivation import THREE_PHASE_POWER
+from calcbook.formulas.voltage_drop_derivation import VOLTAGE_DROP
 
-_MODULES: tuple[ModuleType, ...] = (three_phase, cable_current, demand)
+_MODULES: tuple[ModuleType, ...] = (
+    three_phase,
+    cable_current,
+    neutral,
+    demand,
+    conductor_impedance,
+    voltage_drop,
+    feeder_drop,
+    board,
+)
 
 DERIVATIONS: dict[str, Derivation] = {
-    derivation.key: derivation for derivation in (THREE_PHASE_POWER, CABLE_CURRENT, DEMAND)
+    derivation.key: derivation for derivation in (THREE_PHASE_POWER, CABLE_CURRENT, DEMAND, VOLTAGE_DROP)
 }
 
 

@@ -8,9 +8,13 @@ from dataclasses import dataclass, field, replace
 from calcbook.inputs.conditions import report_conditions
 from calcbook.inputs.faults import FaultList
 from calcbook.inputs.fields import fields_of
-from calcbook.inputs.fill import fill_gaps, is_line_to_neutral
+from calcbook.inputs.fill import basis_ambient, fill_gaps, is_line_to_neutral, keyed
+from calcbook.inputs.installation import PLACE, report_installation, report_place_needed
+from calcbook.inputs.neutral import report_neutral
 from calcbook.inputs.notes import Notes
 from calcbook.inputs.refusals import report_refusals
+from calcbook.inputs.routes import FILE as ROUTES_FILE
+from calcbook.inputs.routes import Routes, report_route
 from calcbook.inputs.rows import Row, read_rows
 from calcbook.inputs.text import nearest_name, shown
 from calcbook.records.project import Circuit, Datum
@@ -20,7 +24,7 @@ FILE = "circuits.csv"
 
 @dataclass(frozen=True)
 class Surroundings:
-    """What circuits stand in: the basis, the names of boards, sources, cases and couplers, and the notes.
+    """What circuits stand in: the basis, the names of boards, sources, cases and couplers, the notes, the routes.
 
     `known` is False where inputs.toml could not be read: then nothing is checked against it.
     """
@@ -29,6 +33,7 @@ class Surroundings:
     names: Mapping[str, Collection[str]]
     notes: Notes
     known: bool
+    routes: Routes = field(default_factory=Routes)
 
     @property
     def complete(self) -> bool:
@@ -56,14 +61,29 @@ def read_circuits(text: str, decimal: str, around: Surroundings, faults: FaultLi
         references.check(row)
         report_conditions(row)
         report_refusals(row)
-        if row.lacks("ambient") and around.known and "ambient_air" not in around.basis:
-            row.fault("ambient", "is empty, and [basis] has no valid ambient_air")
+        report_neutral(row)
+        _report_places(row, around)
         circuits.unused |= unused & row.values.keys()
         _take(row, around, circuits)
     if not rows:
         faults.add(FILE, "", "has no circuit")
     references.check_circuits(circuits.columns)
     return circuits
+
+
+def _report_places(row: Row, around: Surroundings) -> None:
+    """Report what does not fit together where the cable lies, in one place or in the parts of its route."""
+    parts = around.routes.of(row.text("tag"))
+    if parts:
+        report_route(parts, row)
+    else:
+        report_place_needed(row)
+        report_installation(row, row)
+    for place in parts.values() or (row,):
+        needed = basis_ambient(place.text("method"))
+        if place.lacks("ambient") and around.known and needed not in around.basis:
+            place.fault("ambient", f"is empty, and [basis] has no valid {needed}")
+        row.wrong |= {"route"} if place is not row and place.wrong else set()
 
 
 def _take(row: Row, around: Surroundings, circuits: Circuits) -> None:
@@ -74,7 +94,7 @@ def _take(row: Row, around: Surroundings, circuits: Circuits) -> None:
         return
     circuit = _circuit(row, around)
     circuits.found.append(circuit)
-    circuits.columns[tag] = circuit.data.keys()
+    circuits.columns[tag] = {name.partition("[")[0] for name in circuit.data}
 
 
 def _circuit(row: Row, around: Surroundings) -> Circuit:
@@ -87,8 +107,22 @@ def _circuit(row: Row, around: Surroundings) -> Circuit:
     rated = data.get("rated_voltage")
     if rated and rated.quantity and is_line_to_neutral(data["phases"].text):
         data["rated_voltage"] = replace(rated, quantity=replace(rated.quantity, kind="line_to_neutral_voltage"))
-    fill_gaps(tag, data, around.basis, around.notes)
+    parts = around.routes.of(tag)
+    for part, place in parts.items():
+        data |= _part(tag, part, place, around.notes)
+    fill_gaps(tag, data, tuple(parts), around.basis, around.notes)
     return Circuit(tag, row.text("description"), data)
+
+
+def _part(tag: str, part: str, place: Row, notes: Notes) -> dict[str, Datum]:
+    """The data of one part of a route, as "method[P1]"; its length is the part_length."""
+    found = {}
+    for name in ("length", *PLACE):
+        if name in place.values:
+            value, column = place.values[name], "part_length" if name == "length" else name
+            origin = replace(notes.origin(ROUTES_FILE, tag, name), column=f"{part}, {name}")
+            found[keyed(column, part)] = Datum(value.text, value.quantity, origin)
+    return found
 
 
 class _Tags:
@@ -120,13 +154,12 @@ class _References:
 
     def check(self, row: Row) -> None:
         for column, reference in self._columns.items():
-            kind = reference.choices[0]
             if column not in row.values:
                 continue
-            if kind == "circuits":
+            if reference.choices == ("circuits",):
                 self._pending.append((row, column))
             elif self._around.known:
-                self._check(row, column, self._around.names[kind])
+                self._check(row, column, [name for kind in reference.choices for name in self._around.names[kind]])
 
     def check_circuits(self, tags: Collection[str]) -> None:
         for row, column in self._pending:
@@ -136,4 +169,5 @@ class _References:
         field, text = self._columns[column], row.text(column)
         for name in text.split() if field.holds == "references" else [text]:
             if name not in known:
-                row.fault(column, f"{shown(name)} is not one of the {field.choices[0]}; {nearest_name(name, known)}")
+                kinds = " or ".join(field.choices)
+                row.fault(column, f"{shown(name)} is not one of the {kinds}; {nearest_name(name, known)}")

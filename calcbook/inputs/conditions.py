@@ -7,21 +7,24 @@ from collections.abc import Callable
 from calcbook.inputs.rows import Row
 
 LOADS = ("shaft_power", "active_power", "apparent_power", "current")
-_CONSTRUCTION_OF_METHOD = {"B1": "insulated_in_conduit", "B2": "multicore", "C": "multicore", "E": "multicore"}
-# IEC 60364-5-52 Table B.52.17: the methods of installation that each arrangement goes with
-_METHODS_OF_GROUPING = {
-    "single_layer_wall": ("C",),
-    "single_layer_ceiling": ("C",),
-    "single_layer_tray": ("E", "F"),
-    "single_layer_ladder": ("E", "F"),
-}
-# the last rows of IEC 60364-5-52 Tables B.52.14 and B.52.17 (item 1; the other items end with a general value)
-_HOTTEST_AMBIENT = {"PVC70": 60.0, "XLPE90": 80.0}
-_MOST_BUNCHED = 20
+_OF_LOADS = (*LOADS, "power_factor", "efficiency", "rated_current", "rated_voltage", "third_harmonic", "starter")
 _SMALLEST_ALUMINIUM = 2.5
 
 
+def _feeder(row: Row) -> None:
+    kind, board = row.text("kind"), row.text("to")
+    if board and kind not in {"", "feeder"}:
+        row.fault("kind", f'"{kind}" goes with a load; a circuit that leads to a board is of kind feeder')
+    if kind == "feeder" and row.lacks("to"):
+        row.fault("to", "is empty; a circuit of kind feeder leads to a board: name it, or state the kind of the load")
+    for column in _OF_LOADS if board else ():
+        if row.text(column):
+            row.fault(column, f"goes with a load; this circuit leads to board {board} and carries what that asks")
+
+
 def _one_load(row: Row) -> None:
+    if row.text("to") or row.text("kind") == "feeder":
+        return
     given = [name for name in LOADS if name in row.values]
     if len(given) > 1:
         found = " and ".join(f'{name} "{row.text(name)}"' for name in given)
@@ -31,9 +34,12 @@ def _one_load(row: Row) -> None:
 
 
 def _factors_of_load(row: Row) -> None:
-    power = next((name for name in LOADS[:3] if name in row.values), "")
-    if power and row.lacks("power_factor"):
-        row.fault("power_factor", f"is empty; a load given as {power} needs it, and there is no safe value to assume")
+    if row.text("to"):
+        return
+    load = next((name for name in LOADS if name in row.values), "")
+    power = load if load in LOADS[:3] else ""
+    if load and row.lacks("power_factor"):
+        row.fault("power_factor", f"is empty; a load given as {load} needs it, and there is no safe value to assume")
     if power == "shaft_power" and row.lacks("efficiency"):
         row.fault("efficiency", "is empty; a load given as shaft_power needs it")
     if power != "shaft_power" and (power or "current" in row.values) and row.text("efficiency"):
@@ -49,7 +55,8 @@ def _starter(row: Row) -> None:
 
 def _setting_of_breaker(row: Row) -> None:
     device, setting, rating = row.text("device"), row.number("setting_Ir", "A"), row.number("rating", "A")
-    if device == "breaker60947" and row.lacks("setting_Ir") and row.lacks("overload_device"):
+    omitted = row.text("overload_omitted")
+    if device == "breaker60947" and row.lacks("setting_Ir") and row.lacks("overload_device") and not omitted:
         row.fault("setting_Ir", "is empty; a breaker60947 that protects against overload is judged at its setting")
     if device not in {"", "breaker60947"} and setting is not None:
         row.fault("setting_Ir", f"goes with device breaker60947 only; this device is {device}")
@@ -64,31 +71,11 @@ def _setting_of_overload_device(row: Row) -> None:
         row.fault("overload_setting", "goes with an overload_device; name the device that has this setting")
 
 
-def _construction(row: Row) -> None:
-    method, construction = row.text("method"), row.text("construction")
-    wanted = _CONSTRUCTION_OF_METHOD.get(method)
-    if wanted and construction and construction != wanted:
-        row.fault("construction", f'"{construction}" does not go with method {method}; allowed: {wanted}')
-
-
-def _grouping(row: Row) -> None:
-    grouping, method = row.text("grouping"), row.text("method")
-    circuits, runs = row.number("circuits_in_group", "1"), row.number("runs", "1") or 1
-    if grouping == "none" and circuits is not None and (circuits > 1 or runs > 1):
-        found = f"circuits_in_group is {circuits:g} and runs is {runs:g}"
-        row.fault("grouping", f'"none" goes with one circuit of one run only; {found}')
-    methods = _METHODS_OF_GROUPING.get(grouping, ())
-    if methods and method and method not in methods:
-        row.fault("grouping", f'"{grouping}" goes with method {" or ".join(methods)} (Table B.52.17), not {method}')
-    if grouping == "bunched" and circuits is not None and circuits + runs - 1 > _MOST_BUNCHED:
-        found = f"circuits_in_group {circuits:g} and runs {runs:g} make {circuits + runs - 1:g} circuits"
-        row.fault("circuits_in_group", f"{found}; Table B.52.17 ends at {_MOST_BUNCHED} bunched circuits")
-
-
 def _cores(row: Row) -> None:
     cores, phases = row.number("cores", "1"), row.text("phases")
     if cores is None or not phases:
         return
+    cores = 4 if cores == 3.5 else cores  # the fourth core is the smaller one
     live = phases.count("L") + phases.count("N")
     own = row.text("protective_conductor") == "core"
     if cores < live + own:
@@ -102,24 +89,27 @@ def _size_of_aluminium(row: Row) -> None:
         row.fault("size", f'"{row.text("size")}" is not in the tables for Al; they begin at {_SMALLEST_ALUMINIUM} mm2')
 
 
-def _ambient(row: Row) -> None:
-    ambient, hottest = row.number("ambient", "degC"), _HOTTEST_AMBIENT.get(row.text("insulation"))
-    if ambient is not None and hottest is not None and ambient > hottest:
-        found, insulation = row.text("ambient"), row.text("insulation")
-        row.fault("ambient", f'"{found}" is above the last row of Table B.52.14 for {insulation}, {hottest:g} degC')
+def _overload_omitted(row: Row) -> None:
+    if not row.text("overload_omitted"):
+        return
+    if row.lacks("reason"):
+        row.fault("reason", "is empty; overload protection is omitted only for a reason, which the sheet prints")
+    for column in ("overload_device", "setting_Ir"):
+        if row.text(column):
+            found = f'{column} is "{row.text(column)}"'
+            row.fault("overload_omitted", f"{found}: what trips on overload does not go with overload_omitted")
 
 
 _CONDITIONS: tuple[Callable[[Row], None], ...] = (
+    _feeder,
     _one_load,
     _factors_of_load,
     _starter,
     _setting_of_breaker,
     _setting_of_overload_device,
-    _construction,
-    _grouping,
+    _overload_omitted,
     _cores,
     _size_of_aluminium,
-    _ambient,
 )
 
 

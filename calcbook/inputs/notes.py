@@ -53,7 +53,7 @@ class Notes:
         origin = Origin(file, tag, column)
         if not self._notes:
             return origin
-        tags = (tag, EVERY) if file == "circuits.csv" else (tag,)
+        tags = (tag, EVERY) if file in ("circuits.csv", "routes.csv") else (tag,)
         keys = ((one, other) for one in tags for other in (column, EVERY))
         note = next((self._notes[key] for key in keys if key in self._notes), None)
         return note.on(origin) if note else origin

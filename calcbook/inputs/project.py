@@ -6,13 +6,15 @@ from dataclasses import replace
 from pathlib import Path
 
 from calcbook.errors import Fault, InputFaults
-from calcbook.inputs import adopted, circuits, notes, settings
+from calcbook.inputs import adopted, circuits, notes, routes, settings
 from calcbook.inputs.adopted import AdoptedValues, read_adopted
 from calcbook.inputs.circuits import Circuits, Surroundings, read_circuits
 from calcbook.inputs.faults import FaultList
 from calcbook.inputs.fields import fields_of
+from calcbook.inputs.fill import fill_basis, fill_board
 from calcbook.inputs.notes import Notes, read_notes
-from calcbook.inputs.refusals import report_refused_basis, report_refused_files
+from calcbook.inputs.refusals import report_refused_basis
+from calcbook.inputs.routes import read_routes
 from calcbook.inputs.settings import TAGGED, Settings, read_settings
 from calcbook.inputs.source import read_source
 from calcbook.inputs.text import nearest_name, shown
@@ -22,19 +24,19 @@ from calcbook.records.project import Board, Datum, Project, Source
 def read_project(folder: Path) -> Project:
     """Read and validate the inputs of a project.
 
-    Parameters: `folder` with inputs.toml, circuits.csv and, where wanted, notes.csv and adopted.csv.
+    Parameters: `folder` with inputs.toml, circuits.csv and, where wanted, routes.csv, notes.csv and adopted.csv.
     Result: the Project. Raises InputFaults with every fault found; nothing is written.
     """
     if not folder.is_dir():
         raise InputFaults((Fault("", str(folder), "is not a folder; a project is a folder with inputs.toml in it"),))
     faults = FaultList()
-    report_refused_files(folder, faults)
     toml = read_source(folder, settings.FILE, faults, needed=True)
     said = (read_settings(toml, faults) if toml is not None else None) or Settings(readable=False)
     report_refused_basis(said.values.get("basis", {}), faults)
     noted = read_notes(read_source(folder, notes.FILE, faults, needed=False), said.decimal(notes.FILE), faults)
     taken = read_adopted(read_source(folder, adopted.FILE, faults, needed=False), said.decimal(adopted.FILE), faults)
     data = _data(said, noted)
+    _fill(data)
     found = _circuits(folder, said, data, noted, faults)
     _report_what_stands_for_nothing(said, found, noted, taken, faults)
     faults.raise_if_any()
@@ -61,6 +63,15 @@ def _data(said: Settings, noted: Notes) -> dict[str, dict[str, Datum]]:
     }
 
 
+def _fill(data: dict[str, dict[str, Datum]]) -> None:
+    """Add what the basis and the boards do not state and what has a safe value."""
+    for tag, values in data.items():
+        if tag == "basis":
+            fill_basis(values)
+        elif tag.startswith("boards."):
+            fill_board(tag, values)
+
+
 def _circuits(
     folder: Path, said: Settings, data: dict[str, dict[str, Datum]], noted: Notes, faults: FaultList
 ) -> Circuits:
@@ -68,8 +79,12 @@ def _circuits(
     if text is None:
         return Circuits()
     names = {kind: said.names_of(kind) for kind in TAGGED}
-    around = Surroundings(data.get("basis", {}), names, noted, said.readable)
-    return read_circuits(text, said.decimal(circuits.FILE), around, faults)
+    parts = read_routes(read_source(folder, routes.FILE, faults, needed=False), said.decimal(routes.FILE), faults)
+    around = Surroundings(data.get("basis", {}), names, noted, said.readable, parts)
+    found = read_circuits(text, said.decimal(circuits.FILE), around, faults)
+    if found.columns:
+        parts.report_unknown(found.columns)
+    return found
 
 
 def _report_what_stands_for_nothing(

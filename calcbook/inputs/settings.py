@@ -20,7 +20,7 @@ from calcbook.records.project import SignOff, TitleBlock
 FILE = "inputs.toml"
 TABLES = ("project", "basis", "files", "signed_off", "boards", "sources", "cases", "couplers")
 TAGGED = ("boards", "sources", "cases", "couplers")
-_CSV_FILES = ("circuits.csv", "notes.csv", "adopted.csv")
+_CSV_FILES = ("circuits.csv", "routes.csv", "notes.csv", "adopted.csv")
 _PLACE_IN_TOML = re.compile(r"(.*) \(at (line \d+, column \d+|end of document)\)", re.DOTALL)
 
 

@@ -8,6 +8,7 @@ from calcbook.records.line import TableLine
 from calcbook.records.project import Origin
 
 INDEX, INPUTS, TABLES = "index.html", "inputs.html", "tables.html"
+BOUND, BOUND_PDF = "package.html", "package.pdf"
 
 
 def anchor(*parts: str) -> str:

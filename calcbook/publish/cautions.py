@@ -13,12 +13,16 @@ GENERAL = (
     "Table values must be compared with the licensed text.",
 )
 NOT_COMPARED = "not compared with a licensed copy"
+#: what a table's header says where its edition is not known
+NO_EDITION = "not recorded"
 NOT_FOR_ISSUE = "failed, not for issue"
 
 
 def table_name(line: TableLine) -> str:
     """A table as it is cited: standard with edition, and its number."""
     citation = line.citation
+    if citation.edition == NO_EDITION:
+        return f"{citation.standard}, edition {NO_EDITION}, {numbered(citation.table)}"
     standard = f"{citation.standard}:{citation.edition}" if citation.edition else citation.standard
     return f"{standard}, {numbered(citation.table)}"
 

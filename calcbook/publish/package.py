@@ -8,7 +8,10 @@ from collections.abc import Mapping, Sequence
 from pathlib import Path
 from typing import Any
 
-from calcbook.publish.anchors import INDEX, INPUTS, TABLES
+from calcbook.publish.anchors import BOUND, BOUND_PDF, INDEX, INPUTS, TABLES
+from calcbook.publish.bound import attached, bound
+from calcbook.publish.front.material import Material
+from calcbook.publish.grouping import grouped, joined
 from calcbook.publish.pages import inputs_page, register_page, tables_page
 from calcbook.publish.results import results as results_data
 from calcbook.publish.sheet_html import sheet_html
@@ -30,22 +33,28 @@ _ENDINGS = ("html", "pdf", "ipynb")
 def publish(
     project: Project, plan: Plan, results: Sequence[SheetResult], tables: Sequence[PrintedTable], out: Path
 ) -> tuple[Path, ...]:
-    """Write sheets, workbooks, pages and results.json into `out`; hand back the files written.
+    """Write sheets, workbooks, pages, results.json and the bound package into `out`; hand back the files written.
 
-    Sheets come in the order of the plan. Files of sheets that are no longer in the plan are removed, and the PDF of
-    a sheet that failed. Raises WorkspaceFault where the disk refuses.
+    Sheets come in the order of the plan; results of one number are workbooks of one sheet, in their order. Files of
+    sheets that are no longer in the plan are removed, and the PDF of a sheet that failed. Raises WorkspaceFault where
+    the disk refuses.
     """
-    made = {result.number: result for result in results}
-    ordered = [made[sheet.number] for sheet in plan.sheets if sheet.number in made]
-    context = Context(project.title, in_package=True, derivations=_derivations(ordered))
-    views = [sheet_view(_notebook(result), context, result.failure) for result in ordered]
+    groups = grouped(results)
+    parts = {sheet.number: groups[sheet.number] for sheet in plan.sheets if sheet.number in groups}
+    sheets = tuple(joined(group) for group in parts.values())
+    derivations = _derivations(sheets)
+    context = Context(project.title, in_package=True, derivations=derivations)
+    views = [sheet_view(_notebook(sheet), context, sheet.failure) for sheet in sheets]
     files: dict[str, str | bytes] = {}
-    for result, view in zip(ordered, views, strict=True):
-        files.update(_sheet_files(result, view))
-    files[INPUTS] = inputs_page(project, ordered)
-    files[TABLES] = tables_page(project, ordered, tables)
-    files[INDEX] = register_page(project, views)
-    files[RESULTS] = canonical_json(results_data(project.title.title, ordered))
+    for group, view in zip(parts.values(), views, strict=True):
+        files.update(_sheet_files(group, view))
+    files[INPUTS] = inputs_page(project, sheets)
+    files[TABLES] = tables_page(project, sheets, tables)
+    files[INDEX] = register_page(project, views, parts)
+    files[RESULTS] = data = canonical_json(results_data(project.title.title, sheets))
+    material = Material(project, sheets, tuple(tables), derivations)
+    pdfs = {view.number: made for view in views if isinstance(made := files.get(f"{view.number}.pdf"), bytes)}
+    files[BOUND_PDF], files[BOUND] = bound(material, pdfs, tuple(attached(Path(project.folder), parts, data)))
     _remove_stale(out, files)
     for name, content in files.items():
         write_atomically(out / name, content)
@@ -72,21 +81,21 @@ def _notebook(result: SheetResult) -> Mapping[str, Any]:
     return {"metadata": {"calcbook": about}, "cells": [{"cell_type": "code", "source": "", "outputs": outputs}]}
 
 
-def _sheet_files(result: SheetResult, view: SheetView) -> dict[str, str | bytes]:
-    files: dict[str, str | bytes] = {f"{result.number}.html": sheet_html(view, in_package=True)}
+def _sheet_files(parts: Sequence[SheetResult], view: SheetView) -> dict[str, str | bytes]:
+    files: dict[str, str | bytes] = {f"{view.number}.html": sheet_html(view, in_package=True)}
     if view.failure is None:
-        files[f"{result.number}.pdf"] = sheet_pdf(view)
-    if result.workbook:
-        files[f"{result.number}.ipynb"] = result.workbook
+        files[f"{view.number}.pdf"] = sheet_pdf(view)
+    files.update({f"{part.name}.ipynb": part.workbook for part in parts if part.workbook})
     return files
 
 
 def _remove_stale(out: Path, files: Mapping[str, object]) -> None:
     """Remove what an earlier run wrote, as its results.json tells, and this one does not write again."""
     for number in _sheets_before(out / RESULTS):
-        for ending in _ENDINGS:
-            if f"{number}.{ending}" not in files:
-                (out / f"{number}.{ending}").unlink(missing_ok=True)
+        stale = [out / f"{number}.{ending}" for ending in _ENDINGS]
+        for path in (*stale, *out.glob(f"{number}~*.ipynb")):
+            if path.name not in files:
+                path.unlink(missing_ok=True)
 
 
 def _sheets_before(path: Path) -> list[str]:

@@ -2,10 +2,11 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Iterator, Sequence
+from collections.abc import Iterable, Iterator, Mapping, Sequence
 from dataclasses import dataclass, replace
 
 from calcbook.publish import anchors, cautions
+from calcbook.publish.front.material import data_of
 from calcbook.publish.html_page import page
 from calcbook.publish.view import Paragraph, SheetView, Span
 from calcbook.records.line import ChoiceLine, Citation, DatumLine, Line, TableLine
@@ -29,18 +30,21 @@ class RegisterRow:
     open_items: tuple[str, ...]
 
 
-def register_page(project: Project, views: Sequence[SheetView]) -> str:
-    """index.html: every sheet with its state and outcome, open items, unused columns, cautions."""
-    rows = [_register_row(view) for view in views]
+def register_page(project: Project, views: Sequence[SheetView], workbooks: Mapping[str, Sequence[SheetResult]]) -> str:
+    """index.html: every sheet with its state and outcome, open items, unused columns, cautions.
+
+    `workbooks` holds by sheet number the results of its workbooks.
+    """
+    rows = [_register_row(view, workbooks[view.number]) for view in views]
     return page("index.html", title=project.title, rows=rows, unused=project.unused)
 
 
-def _register_row(view: SheetView) -> RegisterRow:
+def _register_row(view: SheetView, workbooks: Sequence[SheetResult]) -> RegisterRow:
     home = anchors.to_sheet(view.number)
-    stem = home.removesuffix("html")
-    files = [Span("HTML", home), Span("workbook", stem + "ipynb")]
+    files = [Span("HTML", home)]
     if view.failure is None:
-        files.insert(1, Span("PDF", stem + "pdf"))
+        files.append(Span("PDF", home.removesuffix("html") + "pdf"))
+    files += [Span(f"workbook {part.part}".rstrip(), f"{part.name}.ipynb") for part in workbooks if part.workbook]
     summary = view.summary if view.failure is None else None
     return RegisterRow(
         number=Span(view.number, home),
@@ -78,7 +82,7 @@ class InputRow:
 def inputs_page(project: Project, results: Sequence[SheetResult]) -> str:
     """inputs.html: every datum of the inputs, and those that sheets state without the inputs naming them."""
     uses: dict[str, list[Span]] = {}
-    found = {anchors.datum_anchor(datum.origin): (datum.origin, _as_printed(datum)) for datum in _data(project)}
+    found = {anchors.datum_anchor(datum.origin): (datum.origin, _as_printed(datum)) for datum in data_of(project)}
     for line in _lines(results):
         if isinstance(line, DatumLine | ChoiceLine):
             key = anchors.datum_anchor(line.origin)
@@ -87,12 +91,6 @@ def inputs_page(project: Project, results: Sequence[SheetResult]) -> str:
     rows = [InputRow(key, origin, text, _once(uses.get(key, []))) for key, (origin, text) in found.items()]
     files = {row.origin.file: [other for other in rows if other.origin.file == row.origin.file] for row in rows}
     return page("inputs.html", title=project.title, files=files)
-
-
-def _data(project: Project) -> Iterator[Datum]:
-    parts = [project.basis, *(board.data for board in project.boards), *(circuit.data for circuit in project.circuits)]
-    for part in parts:
-        yield from part.values()
 
 
 def _as_printed(datum: Datum) -> str:

@@ -34,6 +34,7 @@ _OBTAINED = {
     "public": "read in a public text",
     "formula": "recalled and reproduced by formula",
     "memory": "from memory",
+    "definition": "by definition",
 }
 
 

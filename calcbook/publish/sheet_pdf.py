@@ -24,6 +24,7 @@ from calcbook.publish.view import (
     Summary,
     WorkRow,
 )
+from calcbook.records.project import TitleBlock
 from calcbook.records.written import typst as print_typst
 
 #: PDF/A asks for a date; a sheet without one says so in its title block and carries this one in its metadata.
@@ -37,8 +38,12 @@ def sheet_pdf(view: SheetView) -> bytes:
     """
     if view.failure is not None:
         raise SheetFault(view.number, "", "", f"{cautions.NOT_FOR_ISSUE}: {view.failure.message}")
-    source = typst_source(view).encode()
-    pdf = _compiler().compile(input=source, format="pdf", pdf_standards="a-3b", pdf_tags=False)
+    return compiled(typst_source(view))
+
+
+def compiled(source: str) -> bytes:
+    """Typst source set as an untagged PDF/A-3b."""
+    pdf = _compiler().compile(input=source.encode(), format="pdf", pdf_standards="a-3b", pdf_tags=False)
     assert isinstance(pdf, bytes)  # noqa: S101 - without an output path the compiler hands back one file
     return pdf
 
@@ -50,13 +55,14 @@ def _compiler() -> typst.Compiler:
 
 
 @cache
-def _layout() -> str:
+def layout() -> str:
+    """The layout that sheets and front matter share."""
     return files("calcbook.publish").joinpath("sheet.typ").read_text("utf-8")
 
 
 def typst_source(view: SheetView) -> str:
     """The layout followed by the sheet's data as one literal."""
-    return f"{_layout()}\n#sheet({literal(_sheet(view))})\n"
+    return f"{layout()}\n#sheet({literal(_sheet(view))})\n"
 
 
 def _sheet(view: SheetView) -> dict[str, Literal]:
@@ -64,18 +70,9 @@ def _sheet(view: SheetView) -> dict[str, Literal]:
     return {
         "number": view.number,
         "title": view.title,
-        "day": _day(block.date).timetuple()[:3],
+        "day": day_of(block).timetuple()[:3],
         "version": view.version,
-        "block": {
-            "project": " ".join(text for text in (block.number, block.title) if text),
-            "client": block.client,
-            "revision": block.revision,
-            "state": block.state,
-            "date": block.date,
-            "prepared": block.prepared,
-            "checked": block.checked,
-            "approved": block.approved,
-        },
+        "block": fields_of(block),
         "cautions": cautions.GENERAL,
         "caution": view.caution,
         "summary": _summary(view.summary) if view.summary else None,
@@ -83,18 +80,33 @@ def _sheet(view: SheetView) -> dict[str, Literal]:
     }
 
 
-def _day(text: str) -> date:
-    return date.fromisoformat(text) if re.fullmatch(r"\d{4}-\d\d-\d\d", text) else _UNDATED
+def fields_of(block: TitleBlock) -> dict[str, Literal]:
+    """The title block's fields as the layouts name them."""
+    return {
+        "project": " ".join(text for text in (block.number, block.title) if text),
+        "client": block.client,
+        "revision": block.revision,
+        "state": block.state,
+        "date": block.date,
+        "prepared": block.prepared,
+        "checked": block.checked,
+        "approved": block.approved,
+    }
+
+
+def day_of(block: TitleBlock) -> date:
+    """The date that the metadata carries."""
+    return date.fromisoformat(block.date) if re.fullmatch(r"\d{4}-\d\d-\d\d", block.date) else _UNDATED
 
 
 def _summary(summary: Summary) -> Literal:
     return {
         "verdict": summary.verdict,
-        "governing": _paragraph(summary.governing),
+        "governing": paragraph(summary.governing),
         "criteria": [
             {
                 "description": row.description.text,
-                "sides": _paragraph(row.sides),
+                "sides": paragraph(row.sides),
                 "utilisation": row.utilisation.text,
                 "verdict": row.verdict,
                 "governs": row.governs,
@@ -119,18 +131,18 @@ def _summary(summary: Summary) -> Literal:
 
 def _section(section: Section) -> Literal:
     return {
-        "title": _paragraph(section.title),
+        "title": paragraph(section.title),
         "level": section.level,
-        "opening": [_paragraph(text) for text in section.opening],
+        "opening": [paragraph(text) for text in section.opening],
         "data": [_data_row(row) for row in section.data],
-        "work": [{"text": _paragraph(row)} if isinstance(row, tuple) else _work_row(row) for row in section.work],
+        "work": [{"text": paragraph(row)} if isinstance(row, tuple) else _work_row(row) for row in section.work],
     }
 
 
 def _data_row(row: DataRow) -> Literal:
     return {
         "symbol": _symbol(row.label) if row.label else "",
-        "description": _paragraph(row.description),
+        "description": paragraph(row.description),
         "value": row.value.text,
         "place": row.place,
         "document": row.document,
@@ -141,18 +153,19 @@ def _data_row(row: DataRow) -> Literal:
 
 def _work_row(row: WorkRow) -> dict[str, Literal]:
     return {
-        "reference": [_paragraph(line) for line in row.reference],
-        "description": _paragraph(row.description),
+        "reference": [paragraph(line) for line in row.reference],
+        "description": paragraph(row.description),
         "chain": Mathematics(_chain(row.equations)) if row.equations else None,
         "aligned": Mathematics(" \\ ".join(map(_aligned, row.equations))) if row.equations else None,
         "lines": [Mathematics(_unaligned(equation)) for equation in row.equations],
-        "notes": [_paragraph(line) for line in row.notes],
-        "result": [_paragraph(line) for line in row.result],
+        "notes": [paragraph(line) for line in row.notes],
+        "result": [paragraph(line) for line in row.result],
     }
 
 
-def _paragraph(paragraph: Paragraph) -> Literal:
-    return [_span(span) for span in paragraph]
+def paragraph(spans: Paragraph) -> Literal:
+    """Running text as the layouts take it: texts, symbols and what is set in bold."""
+    return [_span(span) for span in spans]
 
 
 def _span(span: Span) -> Literal:

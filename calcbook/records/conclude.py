@@ -28,12 +28,12 @@ def conclusion(identity: Mapping[str, Any], lines: Sequence[Line], look_up: Look
     headroom of the governing inequality and of the next is worked out.
     """
     criteria = [line for line in lines if isinstance(line, InequalityLine | RuleLine)]
-    order = sorted(criteria, key=_severity, reverse=True)
+    order = sorted(criteria, key=severity, reverse=True)
     inequalities = [line for line in order if isinstance(line, InequalityLine)]
     rooms = (headroom(lines, criterion, look_up) for criterion in inequalities[:2])
     return ConclusionLine(
         **identity,
-        verdict=_verdict(criteria),
+        verdict=verdict_of(criteria),
         governing=order[0].label if order else "",
         order=tuple(line.label for line in order),
         headrooms=tuple(room for room in rooms if room is not None),
@@ -42,13 +42,15 @@ def conclusion(identity: Mapping[str, Any], lines: Sequence[Line], look_up: Look
     )
 
 
-def _severity(criterion: CriterionLine) -> float:
-    if isinstance(criterion, InequalityLine):
+def severity(criterion: CriterionLine) -> float:
+    """The rank of a criterion: its utilisation; above all a rule that is not met or not shown, below all one met."""
+    if isinstance(criterion, InequalityLine) and (criterion.governs or criterion.verdict == "not met"):
         return criterion.utilisation
     return {"not met": float("inf"), "not shown": float("inf"), "met": -1.0}[criterion.verdict]
 
 
-def _verdict(criteria: Sequence[CriterionLine]) -> Verdict:
+def verdict_of(criteria: Sequence[CriterionLine]) -> Verdict:
+    """The verdict of several criteria together: the worst of theirs."""
     verdicts = {criterion.verdict for criterion in criteria}
     return "not met" if "not met" in verdicts else "not shown" if "not shown" in verdicts else "met"
 

@@ -19,6 +19,7 @@ from calcbook.records.written.algebra import expression, symbol
 
 _FARTHEST = 1000.0
 _HALVINGS = 60
+_EXTREMES = (sympy.Min, sympy.Max, sympy.Piecewise)
 
 
 def headroom(lines: Sequence[Line], criterion: InequalityLine, look_up: LookUp) -> Headroom | None:
@@ -111,6 +112,8 @@ def _solved(lines: Sequence[Line], criterion: InequalityLine, datum: DatumLine, 
     unknown = symbol(datum.label)
     try:
         left, right = (_in_terms_of(by_label, side, datum.label) for side in (criterion.left, criterion.right))
+        if _is_laborious(left - right, unknown):
+            return None
         solutions = [complex(solution) for solution in sympy.solve(left - right, unknown, rational=False)]
     except (NotImplementedError, _NotAlgebraicError, TypeError):
         return None
@@ -119,8 +122,14 @@ def _solved(lines: Sequence[Line], criterion: InequalityLine, datum: DatumLine, 
     return best if best is not None and math.isclose(best, near, rel_tol=1e-6) else None
 
 
+def _is_laborious(difference: Any, unknown: Any) -> bool:
+    """Whether the datum stands under a root and beside it: that takes algebra minutes."""
+    roots = [part for part in difference.atoms(sympy.Pow) if not part.exp.is_integer and part.base.has(unknown)]
+    return bool(roots) and difference.count(unknown) > 1
+
+
 class _NotAlgebraicError(Exception):
-    """The datum reaches the criterion through a table or a sum over lines."""
+    """The datum reaches the criterion through a table, a sum over lines, or a min, max or choose."""
 
 
 def _in_terms_of(by_label: dict[str, Line], label: str, unknown: str) -> Any:
@@ -130,9 +139,12 @@ def _in_terms_of(by_label: dict[str, Line], label: str, unknown: str) -> Any:
     if isinstance(line, StepLine) and not line.adopted:
         if any(len(binding.rests_on) != 1 for binding in line.bindings):
             raise _NotAlgebraicError
+        written = expression(line.written)
+        if written.has(*_EXTREMES) and _rests_on(by_label, label, unknown):
+            raise _NotAlgebraicError  # putting the datum into a min, max or choose alone takes algebra minutes
         pairs = ((binding.symbol, binding.rests_on[0]) for binding in line.bindings)
         parts = {symbol(name): _in_terms_of(by_label, rests_on, unknown) for name, rests_on in pairs}
-        return expression(line.written).subs(parts, simultaneous=True)
+        return written.subs(parts, simultaneous=True)
     if isinstance(line, TableLine) and _rests_on(by_label, label, unknown):
         raise _NotAlgebraicError
     if not isinstance(line, Valued):

@@ -143,7 +143,9 @@ class InequalityLine(Identity):
     """A criterion of two sides. `left` and `right` are labels of lines of this sheet; the verdict is unrounded.
 
     `utilisation` is left over right for <= and right over left for >=; above 1 is not met. `headroom_of` is the label
-    of the datum whose greatest change is worked out where this criterion governs.
+    of the datum whose greatest change is worked out where this criterion governs. `above` is the label of a line that
+    both sides of the utilisation are reckoned from: of temperatures the rise over ambient counts. `governs` is false
+    where sizes are compared, which go in steps: only where it is not met does the utilisation say anything.
     """
 
     form: Literal["inequality"] = "inequality"
@@ -158,6 +160,8 @@ class InequalityLine(Identity):
     verdict: Verdict
     reference: str
     headroom_of: str = ""
+    above: str = ""
+    governs: bool = True
 
 
 @dataclass(frozen=True, kw_only=True)

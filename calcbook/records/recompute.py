@@ -83,7 +83,8 @@ def _recompute_line(line: Line, changes: Mapping[str, Quantity | str], look_up: 
         case StepLine():
             done.numbers[label] = line.si if line.adopted else _step(line, done)
         case InequalityLine():
-            utilisation, holds = judge(line.operator, done.numbers[line.left], done.numbers[line.right])
+            above = done.numbers[line.above] if line.above else 0.0
+            utilisation, holds = judge(line.operator, done.numbers[line.left], done.numbers[line.right], above)
             done.utilisations[label] = utilisation
             done.verdicts[label] = "met" if holds else "not met"
         case RuleLine():
@@ -91,12 +92,15 @@ def _recompute_line(line: Line, changes: Mapping[str, Quantity | str], look_up: 
             done.verdicts[label] = judge_rule(found, line.allowed)
 
 
-def judge(operator: str, left: float, right: float) -> tuple[float, bool]:
-    """Utilisation and verdict of an inequality: left over right for <=, right over left for >=, unrounded."""
-    above, below = (left, right) if operator == "<=" else (right, left)
-    if below == 0:
+def judge(operator: str, left: float, right: float, above: float = 0.0) -> tuple[float, bool]:
+    """Utilisation and verdict of an inequality: left over right for <=, right over left for >=, unrounded.
+
+    Both sides of the utilisation are reckoned from `above`, an ambient temperature, where there is one.
+    """
+    part, whole = (left - above, right - above) if operator == "<=" else (right - above, left - above)
+    if whole == 0 or (above and whole < 0):
         raise EvaluationFault(f"{left!r} {operator} {right!r}", "no utilisation: the limit is zero")
-    return above / below, compare(operator, left, right)
+    return part / whole, compare(operator, left, right)
 
 
 def judge_rule(found: str, allowed: tuple[str, ...]) -> Verdict:

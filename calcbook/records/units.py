@@ -42,6 +42,7 @@ KINDS: dict[str, str] = {
     "thermal_resistance": "K/W",
     "temperature_coefficient": "1/K",
     "capacitance": "F",
+    "permeability": "H/m",
     "area": "m2",
     "time": "s",
     "frequency": "Hz",
@@ -50,6 +51,7 @@ KINDS: dict[str, str] = {
     "angle": "rad",
     "ratio": "1",
     "per_cent": "1",
+    "per_cent_per_length": "1/m",
     "count": "1",
     "starts_per_time": "1/s",
 }
@@ -121,6 +123,8 @@ _LIST: tuple[Unit, ...] = (
     Unit("1/K", "1/K", "1/kelvin", ("temperature_coefficient",)),
     Unit("F", "F", "farad", ("capacitance",)),
     Unit("uF", "µF", "microfarad", ("capacitance",)),
+    Unit("H/m", "H/m", "henry/meter", ("permeability",)),
+    Unit("uH/m", "µH/m", "microhenry/meter", ("permeability",)),
     Unit("m2", "m²", "meter**2", ("area",)),
     Unit("mm2", "mm²", "millimeter**2", ("area",)),
     Unit("ms", "ms", "millisecond", ("time",)),
@@ -134,6 +138,8 @@ _LIST: tuple[Unit, ...] = (
     Unit("deg", "°", "degree", ("angle",)),
     Unit("1", "", "dimensionless", ("ratio", "count")),
     Unit("%", "%", "percent", ("per_cent",)),
+    Unit("1/m", "1/m", "1/meter", ("per_cent_per_length",)),
+    Unit("%/m", "%/m", "percent/meter", ("per_cent_per_length",)),
     Unit("1/s", "1/s", "1/second", ("starts_per_time",)),
     Unit("1/h", "1/h", "1/hour", ("starts_per_time",)),
 )

@@ -6,7 +6,7 @@ float; the sentence it raises says what to write instead.
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Literal, NoReturn
 
 from calcbook.errors import DimensionFault
@@ -87,6 +87,16 @@ class Comparison(_WithoutArithmetic):
     left: Value
     operator: Literal["<=", ">="]
     right: Value
+    above: Value | None = None
+    governs: bool = True
+
+    def over(self, ambient: Value) -> Comparison:
+        """The same, its utilisation reckoned as the rise over an ambient temperature."""
+        return replace(self, above=ambient)
+
+    def of_sizes(self) -> Comparison:
+        """The same between sizes, which go in steps: it does not govern unless it is not met."""
+        return replace(self, governs=False)
 
     def __post_init__(self) -> None:
         if not isinstance(self.right, Value):

@@ -2,8 +2,9 @@
 
 Header lines read `# key: value`: standard, edition, table, title, conditions, obtained; `value` names the notation
 entry of the values; `row` the key that makes the printed row; `fixed` keys that hold for the whole table
-(insulation=PVC70); `between` a key whose missing rows take the next greater one, the less favourable. A key column
-with a unit in its head is a quantity, any other a word. A row marked in the column `beyond` also holds past its key.
+(insulation=PVC70); `between` keys whose missing rows take the less favourable neighbour: "circuits up; spacing down",
+or the row that ends the band they lie in: "third_harmonic in bands". A key column with a unit in its head is a
+quantity, any other a word. A row marked in the column `beyond` also holds past its key.
 """
 
 from __future__ import annotations
@@ -64,6 +65,12 @@ class Table:
         pairs = (head.rstrip("]").partition(" [") for head in self.heads if head not in _NOT_KEYS)
         return {name: unit for name, _, unit in pairs}
 
+    @cached_property
+    def stepped(self) -> dict[str, str]:
+        """The keys whose missing rows take a neighbour: name -> "up", "down" or "in bands"."""
+        pairs = (part.partition(" ") for part in self.header.get("between", "").split("; ") if part)
+        return {name: way for name, _, way in pairs}
+
     def look_up(self, arguments: Mapping[str, Key]) -> Found:
         """The value for the given keys.
 
@@ -72,12 +79,12 @@ class Table:
         """
         self._check_arguments(arguments)
         rows = list(self.rows)
-        remark = ""
+        remarks: list[str] = []
         keys = self.keys
-        stepped = self.header.get("between", "").removesuffix(" up")
-        for name in sorted(keys, key=lambda name: name == stepped):
-            if name == stepped:
+        for name in sorted(keys, key=lambda name: name in self.stepped):
+            if name in self.stepped:
                 rows, remark = self._from_row(rows, name, arguments[name])
+                remarks += [remark] if remark else []
             else:
                 rows = self._equal(rows, name, arguments[name])
         row = rows[0]
@@ -88,7 +95,7 @@ class Table:
             row=self._row_text(row),
             column=", ".join(columns),
             status=row["status"],
-            remark=remark,
+            remark="; ".join(remarks),
         )
 
     def _check_arguments(self, arguments: Mapping[str, Key]) -> None:
@@ -127,21 +134,22 @@ class Table:
         return found
 
     def _from_row(self, rows: list[Mapping[str, str]], name: str, wanted: Key) -> tuple[list[Mapping[str, str]], str]:
-        """The row of a stepped key: the exact one, else the next greater, else a last row that holds beyond."""
+        """The rows of a stepped key: the exact ones, else the less favourable, else a last row that holds beyond."""
         head, unit = self._head(name), self.keys[name]
         number = _number(wanted, unit, self.title, name)
         shown = f"{name} {number:g}{_space(unit)}"
-        above = [row for row in rows if float(row[head]) >= number]
-        if above:
-            row = min(above, key=lambda row: float(row[head]))
-            if float(row[head]) == number:
-                return [row], ""
-            return [row], f"{shown} read at {row[head]}{_space(unit)}, less favourable"
+        way = self.stepped[name]
+        has = sorted({float(row[head]) for row in rows})
+        found = [key for key in has if (key <= number if way == "down" else key >= number)]
+        if found:
+            key = found[-1] if way == "down" else found[0]
+            at = f"{key:g}{_space(unit)}"
+            remark = f"in the band that ends at {at}" if way == "in bands" else f"{shown} read at {at}, less favourable"
+            return [row for row in rows if float(row[head]) == key], "" if key == number else remark
         last = max(rows, key=lambda row: float(row[head]))
         if last.get("beyond"):
             return [last], f"no further change beyond {last[head]}"
-        allowed = f"{min(float(row[head]) for row in rows):g} to {last[head]}{_space(unit)}"
-        raise LookUpFault(self.title, f"{shown} is outside the table, {allowed}")
+        raise LookUpFault(self.title, f"{shown} is outside the table, {has[0]:g} to {has[-1]:g}{_space(unit)}")
 
     def printed(self, signed_off: SignOff | None = None) -> PrintedTable:
         """The whole table for the tables page."""

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from decimal import Decimal
 from typing import Any
 
@@ -39,16 +40,27 @@ def summed(formula: Formula) -> set[str]:
 
 
 def inputs(formula: Formula) -> st.SearchStrategy[Drawn]:
-    """Quantities for every symbol of a formula, one to four in a sum, the conductor warmer than its surroundings."""
+    """Quantities for every symbol of a formula, one to four in a sum, each physical together with the others."""
     drawn: dict[str, st.SearchStrategy[Any]] = {}
     for entry in formula.symbols:
         one = numbers(entry).map(_quantity(entry))
         drawn[entry.name] = st.lists(one, min_size=1, max_size=4) if entry.name in summed(formula) else one
-    return st.fixed_dictionaries(drawn).filter(_is_physical)
+    return st.fixed_dictionaries(drawn).map(_bearable).filter(_is_physical)
 
 
 def _quantity(entry: Name) -> Any:
     return lambda number: Quantity(number, entry.unit, entry.kind)
+
+
+def _bearable(drawn: Drawn) -> Drawn:
+    """A current through an impedance is lowered until the source can feed it: a fifth at most."""
+    source = drawn.get("U_s", drawn.get("U_sN"))
+    values = [source, *(drawn.get(name) for name in ("I_B", "R", "X"))]
+    if not all(isinstance(value, Quantity) for value in values):
+        return drawn
+    voltage, current, resistance, reactance = (value.number for value in values if isinstance(value, Quantity))
+    number = min(current, 0.2 * voltage / math.hypot(resistance, reactance))
+    return {**drawn, "I_B": Quantity(number, "A", "line_current")}
 
 
 def _is_physical(drawn: Drawn) -> bool:

@@ -23,6 +23,8 @@ frequency = "50 Hz"
 nominal_voltage = "400 V"
 line_to_earth_voltage = "230 V"
 ambient_air = "35 degC"
+drop_origin = "MB"
+supply_is = "public"
 [basis.editions]
 "IEC 60364-5-52" = "2009"
 [boards.MB]
@@ -46,6 +48,8 @@ CIRCUIT = {
     "method": "E",
     "grouping": "none",
     "circuits_in_group": "1",
+    "length [m]": "62",
+    "length_basis": "measured",
     "device": "gG",
     "rating [A]": "160",
     "overload_device": "relay60947",

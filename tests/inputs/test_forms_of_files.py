@@ -155,7 +155,7 @@ def test_sizes_are_those_of_the_tables() -> None:
             assert not sizes or sizes == {size for size in choices if size >= smallest}
 
 
-@pytest.mark.parametrize(("name", "count"), [("tern_quay", 6), ("tern_quay_failing", 4)])
+@pytest.mark.parametrize(("name", "count"), [("tern_quay", 28), ("tern_quay_failing", 7)])
 def test_examples_are_sound(name: str, count: int) -> None:
     project = read_project(ROOT / "examples" / name)
     assert len(project.circuits) == count

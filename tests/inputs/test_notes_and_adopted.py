@@ -105,7 +105,7 @@ def test_kind_of_a_rated_voltage_follows_the_phases(tmp_path: Path, phases: str,
     [
         ("C-2,*,D,,,,", 'row 2, tag: "C-2" is no tag of the inputs; did you mean "C-1"?'),
         ("C-1,sise,D,,,,", 'row 2, column: "sise" is not known here; did you mean "size"?'),
-        ("C-1,length,D,,,,", "row 2, column: C-1 has no length: the note speaks of nothing"),
+        ("C-1,drawing,D,,,,", "row 2, column: C-1 has no drawing: the note speaks of nothing"),
         ("basis,sise,D,,,,", None),
         ("basis,c_max,D,,,,", "row 2, column: basis has no c_max: the note speaks of nothing"),
         ("C-1,size,D,,,sure,", 'row 2, status: "sure" is not allowed; allowed: confirmed, assumed, to be confirmed'),

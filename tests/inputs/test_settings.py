@@ -132,8 +132,8 @@ def test_other_faults_are_faults_too(tmp_path: Path, toml: str) -> None:
     ("toml", "place"),
     [
         ("[project\n", "line 1, column 9"),
-        (TOML + "x = \n", "line 14, column 5"),
-        (TOML + "[boards.MB]\n", "line 14, column 11"),
+        (TOML + "x = \n", "line 16, column 5"),
+        (TOML + "[boards.MB]\n", "line 16, column 11"),
         ('a = """', "end of document"),
     ],
 )
@@ -156,10 +156,9 @@ def test_broken_toml_does_not_hide_the_faults_of_circuits(tmp_path: Path) -> Non
 
 def test_everything_the_trade_may_state_is_taken_and_listed_as_unused(tmp_path: Path) -> None:
     basis = changed("[basis.editions]", 'national_deviations = ["Form A", "Form B"]\n[basis.editions]')
-    project = read(tmp_path, circuit(**{"length [m]": "20"}), toml=basis + FULL)
+    project = read(tmp_path, circuit(**{"cable_tag": "W-1"}), toml=basis + FULL)
     assert set(project.unused) == {
-        "circuits.csv: length",
-        "inputs.toml: basis.drop_limits.lighting",
+        "circuits.csv: cable_tag",
         "inputs.toml: basis.national_deviations",
         "inputs.toml: boards.*.busbar_rating",
         "inputs.toml: cases.*.is_normal",
@@ -167,7 +166,6 @@ def test_everything_the_trade_may_state_is_taken_and_listed_as_unused(tmp_path: 
         "inputs.toml: cases.*.used_for",
         "inputs.toml: couplers.*.between",
         "inputs.toml: sources.*.fault_level_max",
-        "inputs.toml: sources.*.kind",
         "inputs.toml: sources.*.u_k",
         "inputs.toml: sources.*.vector_group",
     }
@@ -240,14 +238,6 @@ def test_a_file_far_too_large(tmp_path: Path) -> None:
     folder = write(tmp_path)
     (folder / "inputs.toml").write_bytes(b"#" * (2**20 + 1))
     assert faults_in(folder)[0] == "inputs.toml: has 1048577 bytes; allowed are 1048576"
-
-
-def test_routes_are_refused(tmp_path: Path) -> None:
-    wrong = faults_of(tmp_path, routes="circuit,part\n")
-    assert wrong == [
-        "routes.csv: a route in several parts is not covered yet, and leaving it out would be unsafe; give the most "
-        "adverse part as method and ambient"
-    ]
 
 
 def test_devices_are_listed_as_unused(tmp_path: Path) -> None:

@@ -63,7 +63,10 @@ def test_each_kind_of_sheet_has_its_templates(plan: Plan) -> None:
         ("C-006", {"board_voltage": ("QB~supply", "U_s[L1L2L3]"), "board_drop": ("QB~supply", "du_board[L1L2L3]")}),
         ("C-004", {"board_voltage": ("QB~supply", "U_k[L2]"), "board_drop": ("QB~supply", "du_k[L2]")}),
         ("C-020", {"board_voltage": ("PS~supply", "U_s[L1L3]"), "board_drop": ("PS~supply", "du_board[L1L3]")}),
-        ("QB~supply", {f"voltage_{a}[{k}]": ("F-004", f"U_{a}[{k}]") for a in ("re", "im") for k in ("L1", "L2", "L3")}),
+        (
+            "QB~supply",
+            {f"voltage_{a}[{k}]": ("F-004", f"U_{a}[{k}]") for a in ("re", "im") for k in ("L1", "L2", "L3")},
+        ),
     ],
 )
 def test_what_a_sheet_rests_on(plan: Plan, name: str, rests_on: dict[str, tuple[str, str]]) -> None:

@@ -63,6 +63,7 @@ def published(tmp_path_factory: pytest.TempPathFactory) -> Path:
 def test_what_is_written(published: Path) -> None:
     whole = [f"{number}.{ending}" for number in ("C-014", "D-three-phase", "MB") for ending in ("html", "pdf", "ipynb")]
     pages = ["index.html", "inputs.html", "tables.html", "results.json", "C-015.html", "C-015.ipynb"]
+    pages += ["package.pdf", "package.html"]
     assert sorted(path.name for path in published.iterdir()) == sorted(whole + pages)
 
 

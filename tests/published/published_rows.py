@@ -2,7 +2,8 @@
 
 A row names a formula, or a look-up in one of the package's tables, and its inputs: "12.75 kW" as the source gives
 it; "(415/hypot(3, 4)) A" worked out from the source's data by the grammar of written forms; "[b.52.14: ...]" read
-from a table of the package. The tolerance is half a unit in the last printed digit unless the row gives another with
+from a table of the package. An a.c. resistance with its cable's data is worked out by the whole chain of tables and
+formulas. The tolerance is half a unit in the last printed digit unless the row gives another with
 its reason.
 """
 
@@ -14,6 +15,8 @@ from dataclasses import dataclass
 from decimal import Decimal
 from functools import cache
 from pathlib import Path
+
+from cable_resistance import ac_resistance
 
 from calcbook.formulas.register import formulas
 from calcbook.records.dimension import factor
@@ -88,6 +91,8 @@ def result(row: Row) -> float:
     pairs = _pairs(row.inputs, "; ", "=")
     if row.formula.startswith(LOOK_UP):
         found = _looked_up(row.formula.removeprefix(LOOK_UP), pairs)
+    elif "insulation" in pairs:
+        found = ac_resistance(pairs)
     else:
         inputs = {name: _input(name, text) for name, text in pairs.items()}
         found, _ = formulas()[row.formula].evaluate(inputs)

@@ -56,7 +56,8 @@ def test_what_is_printed_names_one_quantity() -> None:
 
 def test_a_parameter_stands_for_one_symbol_or_for_one_a_connection() -> None:
     parameters = {entry.parameter for entry in notation().values() if entry.parameter}
-    assert {name for name in parameters if len(names_of_parameter(name)) > 1} == {"rated_voltage"}
+    several = {"rated_voltage", "board_voltage", "voltage_re", "voltage_im"}
+    assert {name for name in parameters if len(names_of_parameter(name)) > 1} == several
     assert [entry.name for entry in names_of_parameter("rated_voltage")] == ["U_r", "U_rN"]
     assert names_of_parameter("no_such_parameter") == ()
 

@@ -15,7 +15,7 @@ from calcbook.reference.table import Key, Table, read_table, table, tables
 
 ALL = pytest.mark.parametrize("table", tables().values(), ids=lambda table: table.key)
 # how a value was obtained; the one cell is 0.8 A off the coefficients of Annex D
-STATUSES = {"public", "public+formula", "formula", "formula(dev 0.8 A)", "memory"}
+STATUSES = {"public", "public+formula", "formula", "formula(dev 0.8 A)", "memory", "definition"}
 
 GOOD = """# standard: IEC 1
 # edition: 2020

@@ -213,3 +213,14 @@ def test_formula_of_wrong_dimension_is_refused() -> None:
     wrong = Formula("wrong", "p", "I_L", "P_2/eta", "v", "r", page.example, citation="none")
     with pytest.raises(DimensionFault, match="P_2/eta: the result has dimension"):
         wrong.evaluate({"P_2": page.example_inputs()["P_2"], "eta": page.example_inputs()["eta"]})
+
+
+def test_the_same_look_up_by_an_earlier_template_is_taken(monkeypatch: pytest.MonkeyPatch) -> None:
+    sheet = quiet_sheet(monkeypatch)
+    first = sheet.table_value("theta_max", choose.GREATEST_TEMPERATURE, insulation="XLPE90")
+    sheet.begin("voltage-drop")
+    again = sheet.table_value("theta_max", choose.GREATEST_TEMPERATURE, insulation="XLPE90")
+    assert (again.label, again.si) == (first.label, first.si)
+    assert len(sheet.lines) == 1
+    with pytest.raises(SheetFault, match="theta_max: stands on this sheet already; a name is given once"):
+        sheet.table_value("theta_max", choose.GREATEST_TEMPERATURE, insulation="PVC70")

@@ -42,7 +42,8 @@ FLOATS = Arithmetic(
     functions={
         "sqrt": math.sqrt, "abs": abs, "exp": math.exp, "ln": math.log, "log10": math.log10,
         "sin": math.sin, "cos": math.cos, "tan": math.tan, "asin": math.asin, "acos": math.acos, "atan": math.atan,
-        "atan2": math.atan2, "hypot": math.hypot, "min": min, "max": max,
+        "atan2": math.atan2, "hypot": math.hypot,
+        "min": lambda *parts: min(parts), "max": lambda *parts: max(parts),
     },
 )  # fmt: skip
 
@@ -75,7 +76,7 @@ def mpmath_arithmetic(digits: int = 30) -> Arithmetic:
     context.dps = digits
     names = ("sqrt", "exp", "ln", "log10", "sin", "cos", "tan", "asin", "acos", "atan", "atan2")
     functions: dict[str, Callable[..., Any]] = {name: getattr(context, name) for name in names}
-    functions |= {"abs": abs, "min": min, "max": max}
+    functions |= {"abs": abs, "min": FLOATS.functions["min"], "max": FLOATS.functions["max"]}
     functions["hypot"] = lambda *parts: context.sqrt(sum(part * part for part in parts))
     return Arithmetic(number=context.mpf, pi=context.pi, functions=functions)
 

@@ -11,7 +11,7 @@ from calcbook.records.written.tree import Node
 
 _GREEK = {
     "α": r"\alpha", "δ": r"\delta", "η": r"\eta", "θ": r"\theta", "κ": r"\kappa", "φ": r"\varphi", "ω": r"\omega",
-    "û": r"\hat u", "î": r"\hat\imath",
+    "ΔU": r"\Delta U", "Δu": r"\Delta u", "û": r"\hat u", "î": r"\hat\imath",
 }  # fmt: skip
 _SIGNS = {"≤": r"\le", "≥": r"\ge", "·": r"\cdot", "−": "-", "π": r"\pi", "…": r"\dots"}
 _SPECIAL = re.compile(r"[\\{}$&#^_~%]")

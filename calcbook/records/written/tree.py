@@ -10,7 +10,8 @@
     symbol   = letter { letter | digit | "_" } [ "[" key "]" ]
 
 Functions are listed in FUNCTIONS. `choose(a <= b, p, q)` is p where the comparison holds, else q. `sum(x)` adds x
-over the lines that its keyed symbols stand for. `integral(x, t, a, b)` is for derivations and has no number.
+over the lines that its keyed symbols stand for; `min(x)` and `max(x)` are written out over them.
+`integral(x, t, a, b)` is for derivations and has no number.
 Everything is bounded: length, depth, number of nodes, size of numbers and exponents; only ASCII is read.
 """
 
@@ -18,7 +19,7 @@ from __future__ import annotations
 
 import math
 import re
-from collections.abc import Iterator
+from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass, replace
 
 from calcbook.errors import WrittenFormFault, nearest
@@ -33,7 +34,7 @@ LARGEST_EXPONENT = 12
 FUNCTIONS: dict[str, tuple[int, int]] = {
     "sqrt": (1, 1), "abs": (1, 1), "exp": (1, 1), "ln": (1, 1), "log10": (1, 1),
     "sin": (1, 1), "cos": (1, 1), "tan": (1, 1), "asin": (1, 1), "acos": (1, 1), "atan": (1, 1), "atan2": (2, 2),
-    "hypot": (2, 8), "min": (2, 8), "max": (2, 8), "choose": (3, 3), "sum": (1, 1), "integral": (4, 4),
+    "hypot": (2, 8), "min": (1, 16), "max": (1, 16), "choose": (3, 3), "sum": (1, 1), "integral": (4, 4),
 }  # fmt: skip
 CONSTANTS = {"pi": math.pi}
 COMPARISONS = ("<=", ">=", "<", ">")
@@ -299,8 +300,8 @@ def symbols_of(node: Node) -> tuple[Symbol, ...]:
 def rename(node: Node, names: dict[str, Symbol]) -> Node:
     """The same tree with symbols replaced: a formula's own symbols by those of the lines bound to them."""
     match node:
-        case Symbol(name, ""):
-            return names.get(name, node)
+        case Symbol():
+            return names.get(write(node), node)
         case Negative(body) | Bracket(body):
             return replace(node, body=rename(body, names))
         case Binary(_, left, right) | Comparison(_, left, right):
@@ -332,6 +333,20 @@ def expand_sums(node: Node, counts: dict[str, int]) -> Node:
             return replace(node, left=expand_sums(left, counts), right=expand_sums(right, counts))
         case Call(_, arguments):
             return replace(node, arguments=tuple(expand_sums(argument, counts) for argument in arguments))
+    return node
+
+
+def spread(node: Node, keyed: Mapping[str, Sequence[Symbol]]) -> Node:
+    """The same tree with `min(x)` and `max(x)` written out over the lines that x stands for: min(x[P1], x[P2])."""
+    match node:
+        case Call("min" | "max", (Symbol(name, ""),)) if name in keyed:
+            return replace(node, arguments=tuple(keyed[name]))
+        case Negative(body) | Bracket(body):
+            return replace(node, body=spread(body, keyed))
+        case Binary(_, left, right) | Comparison(_, left, right):
+            return replace(node, left=spread(left, keyed), right=spread(right, keyed))
+        case Call(_, arguments):
+            return replace(node, arguments=tuple(spread(argument, keyed) for argument in arguments))
     return node
 
 
