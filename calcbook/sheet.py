@@ -32,6 +32,7 @@ from calcbook.records.line import (
     StepLine,
     TableLine,
     Valued,
+    Verdict,
 )
 from calcbook.records.notation import Name, named, names_of_parameter, out_of_range
 from calcbook.records.printed import print_calculated, print_given, print_number, tell_apart
@@ -170,6 +171,7 @@ class Sheet:
                     row=found.row,
                     column=found.column,
                     status=found.status,
+                    conditions=source.header.get("conditions", ""),
                     signed_off=SignOff(**sign_off) if sign_off else None,
                     remark="; ".join(filter(None, (found.remark, self._other_edition(source.header)))),
                 ),
@@ -197,6 +199,7 @@ class Sheet:
         tree = rename(formula.tree, {symbol: Symbol(*_label_parts(bound.label)) for symbol, bound in bindings.items()})
         values = {bound.label: bound for bound in bindings.values()}
         labels = [write(symbol) for symbol in symbols_of(tree)]
+        unpublished = _UNPUBLISHED if formula.derivation and not formula.published else ""
         return self._valued(
             StepLine(
                 **self._identity(name),
@@ -214,16 +217,26 @@ class Sheet:
                 calculated=value,
                 calculated_text=print_calculated(value),
                 adopted=adopted,
-                remark="; ".join(filter(None, (remark, "" if formula.published else _UNPUBLISHED))),
+                valid=formula.valid,
+                remark="; ".join(filter(None, (remark, unpublished))),
             )
         )
 
-    def criterion(
-        self, name: str, comparison: Comparison, /, *, cite: str, description: str = "", headroom: Sequence[str] = ()
+    def criterion(  # noqa: PLR0913 - what a criterion says
+        self,
+        name: str,
+        comparison: Comparison,
+        /,
+        *,
+        cite: str,
+        description: str = "",
+        headroom: Sequence[str] = (),
+        otherwise: Verdict = "not met",
     ) -> None:
         """What must hold, as an inequality.
 
         `headroom` names parameters; the greatest change is worked out of the first of them that is a datum here.
+        `otherwise` is the verdict where it does not hold: "not shown" where that puts a datum in doubt.
         """
         left, right = comparison.left, comparison.right
         utilisation, holds = judge(comparison.operator, left.si, right.si)
@@ -240,8 +253,9 @@ class Sheet:
                 right_text=right_text,
                 utilisation=utilisation,
                 utilisation_text=print_number(utilisation),
-                verdict="met" if holds else "not met",
+                verdict="met" if holds else otherwise,
                 reference=self._dated(cite),
+                otherwise=otherwise,
                 headroom_of=next((data[parameter] for parameter in headroom if parameter in data), ""),
             )
         )
@@ -269,6 +283,7 @@ class Sheet:
         for stage in subject.stages:
             try:
                 proof = "" if stage.is_premise else subject.prove(stage)
+                reached = subject.reached(stage)
             except CalcbookError as error:
                 raise self._fault(stage.name, str(error)) from error
             self._keep(
@@ -280,15 +295,16 @@ class Sheet:
                     standing="premise" if stage.is_premise else "proven",
                     reason=stage.reason,
                     proof=proof,
+                    reached=reached,
                     formula=stage.formula,
                 )
             )
 
     def conclude(self) -> None:
         """The end of the sheet: order of the criteria, governing one, headroom, open items, cautions."""
-        unused = [label for label in self.adopted if label not in {line.label for line in self.lines}]
+        steps = [line.label for line in self.lines if isinstance(line, StepLine)]
+        unused = [label for label in self.adopted if label not in steps]
         if unused:
-            steps = [line.label for line in self.lines if isinstance(line, StepLine)]
             raise self._fault(
                 unused[0], f"an adopted value, but this sheet has no such step; {nearest(unused[0], steps)}"
             )

@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Collection, Mapping
 from dataclasses import dataclass, field, replace
 
+from calcbook.inputs.against_basis import report_against_basis
 from calcbook.inputs.conditions import report_conditions
 from calcbook.inputs.faults import FaultList
 from calcbook.inputs.fields import fields_of
@@ -58,11 +59,14 @@ def read_circuits(text: str, decimal: str, around: Surroundings, faults: FaultLi
         report_refusals(row)
         if row.lacks("ambient") and around.known and "ambient_air" not in around.basis:
             row.fault("ambient", "is empty, and [basis] has no valid ambient_air")
+        if around.complete:
+            report_against_basis(row, around.basis)
         circuits.unused |= unused & row.values.keys()
         _take(row, around, circuits)
-    if not rows:
+    if not rows and not faults.any_in(FILE):
         faults.add(FILE, "", "has no circuit")
-    references.check_circuits(circuits.columns)
+    if not faults.stopped(FILE):
+        references.check_circuits(circuits.columns)
     return circuits
 
 

@@ -16,9 +16,13 @@ _METHODS_OF_GROUPING = {
     "single_layer_ladder": ("E", "F"),
 }
 # the last rows of IEC 60364-5-52 Tables B.52.14 and B.52.17 (item 1; the other items end with a general value)
-_HOTTEST_AMBIENT = {"PVC70": 60.0, "XLPE90": 80.0}
+HOTTEST_AMBIENT = {"PVC70": 60.0, "XLPE90": 80.0}
 _MOST_BUNCHED = 20
 _SMALLEST_ALUMINIUM = 2.5
+# IEC 60269-1, 5.3.1
+_GG_RATINGS = (
+    2, 4, 6, 8, 10, 12, 16, 20, 25, 32, 40, 50, 63, 80, 100, 125, 160, 200, 250, 315, 400, 500, 630, 800, 1000, 1250,
+)  # fmt: skip
 
 
 def _one_load(row: Row) -> None:
@@ -38,6 +42,25 @@ def _factors_of_load(row: Row) -> None:
         row.fault("efficiency", "is empty; a load given as shaft_power needs it")
     if power != "shaft_power" and (power or "current" in row.values) and row.text("efficiency"):
         row.fault("efficiency", "goes with shaft_power only: the other loads are what the circuit takes")
+
+
+def _current_and_nameplate(row: Row) -> None:
+    if row.text("current") and row.text("rated_current"):
+        found = f'current "{row.text("current")}" and rated_current "{row.text("rated_current")}"'
+        row.fault("rated_current", f"{found}: a load given by its current has no second one; write the one that counts")
+
+
+def _third_harmonic(row: Row) -> None:
+    if row.text("phases") == "L1L2L3N" and row.lacks("third_harmonic"):
+        row.fault("third_harmonic", "is empty; a circuit on L1L2L3N needs it, for it loads the neutral (0 where none)")
+
+
+def _rating_of_fuse(row: Row) -> None:
+    for device, rating in (("device", "rating"), ("overload_device", "overload_setting")):
+        number = row.number(rating, "A")
+        if row.text(device) == "gG" and number is not None and number not in _GG_RATINGS:
+            allowed = ", ".join(f"{value:g}" for value in _GG_RATINGS)
+            row.fault(rating, f'"{row.text(rating)}" is no rated current of a gG fuse-link; allowed: {allowed} A')
 
 
 def _starter(row: Row) -> None:
@@ -103,7 +126,7 @@ def _size_of_aluminium(row: Row) -> None:
 
 
 def _ambient(row: Row) -> None:
-    ambient, hottest = row.number("ambient", "degC"), _HOTTEST_AMBIENT.get(row.text("insulation"))
+    ambient, hottest = row.number("ambient", "degC"), HOTTEST_AMBIENT.get(row.text("insulation"))
     if ambient is not None and hottest is not None and ambient > hottest:
         found, insulation = row.text("ambient"), row.text("insulation")
         row.fault("ambient", f'"{found}" is above the last row of Table B.52.14 for {insulation}, {hottest:g} degC')
@@ -112,6 +135,9 @@ def _ambient(row: Row) -> None:
 _CONDITIONS: tuple[Callable[[Row], None], ...] = (
     _one_load,
     _factors_of_load,
+    _current_and_nameplate,
+    _third_harmonic,
+    _rating_of_fuse,
     _starter,
     _setting_of_breaker,
     _setting_of_overload_device,

@@ -17,6 +17,12 @@ UNSAFE = "is not covered yet, and leaving it out would be unsafe"
 COVERED_METHODS = ("B1", "B2", "C", "E")
 
 REFUSED_FILES = {"routes.csv": f"a route in several parts {UNSAFE}; give the most adverse part as method and ambient"}
+_FREQUENCIES = (50.0, 60.0)
+_REFUSED_BOARDS: tuple[tuple[str, Callable[[Value], bool], str], ...] = (
+    ("derating", lambda value: value.quantity is not None and value.quantity.number < 1,
+     f"the derating of devices in a warm enclosure {UNSAFE}"),
+    ("ambient", lambda value: True, "is not taken over by circuits yet; state ambient in each circuit, or ambient_air"),
+)  # fmt: skip
 REFUSED_BASIS = {("practice", "nec"): 'practice "nec" is not covered yet; covered is "iec"'}
 
 
@@ -45,11 +51,6 @@ def _neutral_loaded(row: Row) -> bool:
     return row.text("phases") == "L1L2L3N"
 
 
-def _harmonics_unknown(row: Row) -> bool:
-    electronic = row.text("kind") in {"lighting", "charger"}
-    return electronic and _neutral_loaded(row) and row.lacks("third_harmonic")
-
-
 def _harmonics_in_neutral(row: Row) -> bool:
     return _neutral_loaded(row) and (row.number("third_harmonic", "%") or 0) > 15
 
@@ -74,11 +75,6 @@ REFUSALS = (
         "overload_omitted", lambda row: bool(row.text("overload_omitted")), f"omitted overload protection {UNSAFE}"
     ),
     Refusal("third_harmonic", _harmonics_in_neutral, f"a third harmonic above 15 % with a neutral {UNSAFE}"),
-    Refusal(
-        "third_harmonic",
-        _harmonics_unknown,
-        "is empty; kind {kind} on L1L2L3N needs it: an unknown third harmonic in the neutral would be unsafe",
-    ),
     Refusal("neutral_size", _neutral_smaller, f"a neutral smaller than the line {UNSAFE}"),
     Refusal("cores", _says("cores", "3.5"), f"a neutral smaller than the line (3.5 cores) {UNSAFE}"),
     Refusal("trays", _above("trays", 1, "1"), f"a stack of trays (Table B.52.20) {UNSAFE}"),
@@ -97,6 +93,18 @@ def report_refused_basis(basis: Mapping[str, Value], faults: FaultList) -> None:
     for (key, word), sentence in REFUSED_BASIS.items():
         if key in basis and basis[key].text == word:
             faults.add("inputs.toml", f"[basis], {key}", sentence)
+    frequency = basis["frequency"].quantity if "frequency" in basis else None
+    if frequency is not None and frequency.number not in _FREQUENCIES:
+        found = f'"{basis["frequency"].text}" {UNSAFE}: the tables are for 50 and 60 Hz'
+        faults.add("inputs.toml", "[basis], frequency", found)
+
+
+def report_refused_boards(boards: Mapping[str, Mapping[str, Value]], faults: FaultList) -> None:
+    """Report what a board asks for that is not covered yet and would make its circuits less safe."""
+    for tag, values in boards.items():
+        for key, meets, sentence in _REFUSED_BOARDS:
+            if key in values and meets(values[key]):
+                faults.add("inputs.toml", f"[{tag}], {key}", sentence)
 
 
 def report_refused_files(folder: Path, faults: FaultList) -> None:

@@ -23,6 +23,7 @@ from calcbook.publish.view import (
     Span,
     Summary,
     WorkRow,
+    signature,
 )
 from calcbook.records.written import typst as print_typst
 
@@ -73,8 +74,8 @@ def _sheet(view: SheetView) -> dict[str, Literal]:
             "state": block.state,
             "date": block.date,
             "prepared": block.prepared,
-            "checked": block.checked,
-            "approved": block.approved,
+            "checked": signature(block, block.checked),
+            "approved": signature(block, block.approved),
         },
         "cautions": cautions.GENERAL,
         "caution": view.caution,
@@ -90,6 +91,8 @@ def _day(text: str) -> date:
 def _summary(summary: Summary) -> Literal:
     return {
         "verdict": summary.verdict,
+        "examined": summary.examined,
+        "adopted": [_paragraph(line) for line in summary.adopted],
         "governing": _paragraph(summary.governing),
         "criteria": [
             {

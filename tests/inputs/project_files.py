@@ -24,6 +24,7 @@ nominal_voltage = "400 V"
 line_to_earth_voltage = "230 V"
 ambient_air = "35 degC"
 [basis.editions]
+"IEC 60364-4-43" = "2008"
 "IEC 60364-5-52" = "2009"
 [boards.MB]
 """

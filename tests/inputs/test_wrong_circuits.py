@@ -162,10 +162,30 @@ NOT_COVERED = [
     ),
     (
         {**NEUTRAL, "kind": "charger", "starter": ""},
-        "row 2, third_harmonic: is empty; kind charger on L1L2L3N needs it: an unknown third harmonic in the neutral "
-        "would be unsafe",
+        "row 2, third_harmonic: is empty; a circuit on L1L2L3N needs it, for it loads the neutral (0 where none)",
     ),
-    ({**NEUTRAL, "neutral_size": "16 mm2"}, f"row 2, neutral_size: a neutral smaller than the line {UNSAFE}"),
+    (
+        {"current": "20 A", "shaft_power": "", "efficiency": "", "rated_current": "20 A", "rated_voltage": ""},
+        'row 2, rated_current: current "20 A" and rated_current "20 A": a load given by its current has no second one; '
+        "write the one that counts",
+    ),
+    (
+        {"rated_voltage": "690 V"},
+        'row 2, rated_voltage: "690 V" does not go with 400 V between lines (phases L1L2L3); allowed is 360 to 440 V',
+    ),
+    (
+        {"phases": "L1N", "rated_voltage": "400 V"},
+        'row 2, rated_voltage: "400 V" does not go with 230 V line to neutral (phases L1N); allowed is 207 to 253 V',
+    ),
+    (
+        {"device": "gG", "rating": "35 A", "setting_Ir": "", "overload_device": "", "overload_setting": ""},
+        'row 2, rating [A]: "35 A" is no rated current of a gG fuse-link; allowed: 2, 4, 6, 8, 10, 12, 16, 20, 25, 32, 40, '
+        "50, 63, 80, 100, 125, 160, 200, 250, 315, 400, 500, 630, 800, 1000, 1250 A",
+    ),
+    (
+        {**NEUTRAL, "third_harmonic": "0 %", "neutral_size": "16 mm2"},
+        f"row 2, neutral_size: a neutral smaller than the line {UNSAFE}",
+    ),
     ({"cores": "3.5"}, f"row 2, cores: a neutral smaller than the line (3.5 cores) {UNSAFE}"),
     ({"trays": "2"}, f"row 2, trays: a stack of trays (Table B.52.20) {UNSAFE}"),
     ({"kind": "capacitor", "starter": ""}, f"row 2, kind: the overcurrent of a capacitor {UNSAFE}"),
@@ -271,7 +291,7 @@ frequency = "50 kW"
 nominal_voltage = "400 V"
 line_to_earth_voltage = "230 V"
 ambient_air = "35 degC"
-editions = {"IEC 60364-5-52" = "2009"}
+editions = {"IEC 60364-4-43" = "2008", "IEC 60364-5-52" = "2009"}
 [boards.MB]
 """
 
@@ -289,8 +309,8 @@ editions = {"IEC 60364-5-52" = "2009"}
         (
             "[kW]",
             "[kVA]",
-            'row 1, column 6: "kVA" is a unit of apparent power; active power takes "W", "kW", "MW", "hp_imperial" or '
-            '"hp_metric"',
+            'row 1, column 6: "shaft_power [kVA]": "kVA" is a unit of apparent power; active power takes "W", "kW", '
+            '"MW", "hp_imperial" or "hp_metric"',
         ),
         ("starter", "efficiency", 'row 1, efficiency: the column stands twice, first as "efficiency"'),
         ("starter", "size [mm2]", 'row 1, size [mm2]: the column stands twice, first as "size [mm2]"'),
@@ -324,8 +344,40 @@ def test_too_many_cells(tmp_path: Path) -> None:
     with (folder / "circuits.csv").open("a") as file:
         file.write("C-2" + ",1" * 22 + "\n")
     assert faults_in(folder) == [
-        'circuits.csv, row 3: 23 cells under 21 heads, the last is "1"; a comma within a number or a text splits a '
-        "cell, unless the cell stands in quotation marks"
+        'circuits.csv, row 3: 23 cells under 21 heads, the last is "1"; a comma or semicolon within a number or a '
+        "text splits a cell, unless the cell stands in quotation marks"
+    ]
+
+
+def test_a_comma_that_pushes_empty_cells_over_the_end(tmp_path: Path) -> None:
+    """One fault, not one for each cell that came to stand under the next head."""
+    text = as_csv(circuit(description="Hoist; travelling", starter=None, to="")).replace('"', "")
+    folder = write(tmp_path)
+    (folder / "circuits.csv").write_text(text.replace("Hoist;", "Hoist,"), "utf-8")
+    assert faults_in(folder)[0].startswith('circuits.csv, row 2: 22 cells under 21 heads, the last is "82"; a comma or')
+    assert len(faults_in(folder)) == 1
+
+
+def test_a_refused_head_is_reported_once(tmp_path: Path) -> None:
+    folder = write(tmp_path)
+    text = (folder / "circuits.csv").read_text("utf-8")
+    (folder / "circuits.csv").write_text(text.replace("[kW]", "[KW]").replace("size [mm2]", "sise [mm2]"), "utf-8")
+    assert faults_in(folder) == [
+        'circuits.csv, row 1, column 6: "shaft_power [KW]": "KW" is not a unit calcbook knows; did you mean "kW"?',
+        'circuits.csv, row 1, column 14: "sise" is not known here; did you mean "size"?',
+    ]
+
+
+@pytest.mark.parametrize("first", ["sep=;\n", "Circuits of the workshop\n", "one\ttwo\n", "\0\n"])
+def test_a_first_row_without_any_head_ends_the_reading(tmp_path: Path, first: str) -> None:
+    folder = write(tmp_path, notes="tag,column,document\nC-9,size,D\n")
+    text = (folder / "circuits.csv").read_text("utf-8")
+    (folder / "circuits.csv").write_text(first + text, "utf-8")
+    found = first.strip().replace("\t", "<U+0009>").replace("\0", "<U+0000>")
+    found = "sep=" if found == "sep=;" else found
+    assert faults_in(folder) == [
+        f'circuits.csv, row 1: "{found}" begins a row without a head of a column; the first row that is no comment '
+        "holds them (tag, description, from, ...), separated by commas or semicolons"
     ]
 
 
@@ -341,7 +393,27 @@ def test_a_quotation_mark_that_is_not_closed(tmp_path: Path) -> None:
     folder = write(tmp_path)
     with (folder / "circuits.csv").open("a") as file:
         file.write('C-2,"Bilge pump,MB\nC-3,b\n')
-    assert faults_in(folder)[0].startswith("circuits.csv, row 3: text follows a closed quotation mark, or")
+    (folder / "notes.csv").write_text("tag,column,document\nC-3,size,D\n", "utf-8")
+    (fault,) = faults_in(folder)
+    assert fault.startswith("circuits.csv, row 3: text follows a closed quotation mark, or")
+
+
+def test_a_number_far_from_any_value(tmp_path: Path) -> None:
+    for number in ("1e308", "1e-300", "-1e13"):
+        wrong = faults_of(tmp_path, circuit(shaft_power=number))
+        assert wrong == [f'circuits.csv, row 2, shaft_power [kW]: "{number}" is far from any value of an installation']
+
+
+def test_what_cannot_be_seen_is_shown_as_its_code_point(tmp_path: Path) -> None:
+    assert faults_of(tmp_path, circuit(conductor="C\u200bu"))[0].startswith(
+        'circuits.csv, row 2, conductor: "C<U+200B>u" is not allowed; did you mean "Cu"?'
+    )
+
+
+def test_the_hint_on_decimal_commas_is_for_numbers_only(tmp_path: Path) -> None:
+    assert faults_of(tmp_path, circuit(starter="0,88")) == [
+        'circuits.csv, row 2, starter: "0,88" is not allowed; allowed: direct, star_delta, soft, converter'
+    ]
 
 
 def test_reading_stops_at_a_thousand_faults(tmp_path: Path) -> None:
