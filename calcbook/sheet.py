@@ -54,11 +54,7 @@ def open_sheet(template: str, parameters: Mapping[str, Any]) -> Sheet:
     Parameters: `template` its name; `parameters` the notebook's `globals()`, of which only the template's parameters
     are read: texts by parameter name, and `given` (origins, adopted values, sign-offs, number and title).
     """
-    return Sheet(
-        template,
-        {name: value for name, value in parameters.items() if isinstance(value, str)},
-        parameters.get("given") or {},
-    )
+    return Sheet(template, _texts(parameters), parameters.get("given") or {})
 
 
 class Sheet:
@@ -306,7 +302,8 @@ class Sheet:
         unused = [label for label in self.adopted if label not in steps]
         if unused:
             raise self._fault(
-                unused[0], f"an adopted value, but this sheet has no such step; {nearest(unused[0], steps)}"
+                unused[0],
+                f"adopted.csv has a value for it, but this sheet has no such step; {nearest(unused[0], steps)}",
             )
         self._keep(conclusion(self._identity("conclusion"), self.lines, look_up))
 
@@ -362,6 +359,12 @@ class Sheet:
             return None
         value = read_quantity(str(found["value"]), entry.kind)
         return Adopted(entry.name, value, str(found["reason"]), str(found["by"]), str(found["date"]))
+
+
+def _texts(parameters: Mapping[str, Any]) -> dict[str, str]:
+    """The parameters among a notebook's names, as texts: `papermill -p runs 2` hands over a number."""
+    plain = (str, int, float)
+    return {name: str(value) for name, value in parameters.items() if type(value) in plain and not name.startswith("_")}
 
 
 def look_up(key: str, arguments: Mapping[str, str | Quantity]) -> Quantity:

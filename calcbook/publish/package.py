@@ -15,7 +15,7 @@ from calcbook.publish.sheet_html import sheet_html
 from calcbook.publish.sheet_pdf import sheet_pdf
 from calcbook.publish.sheet_view import Context, sheet_view
 from calcbook.publish.view import SheetView
-from calcbook.records.files import write_atomically
+from calcbook.records.files import remove, write_atomically
 from calcbook.records.line import DerivationLine
 from calcbook.records.printed_table import PrintedTable
 from calcbook.records.project import Plan, Project
@@ -86,7 +86,7 @@ def _remove_stale(out: Path, files: Mapping[str, object]) -> None:
     for number in _sheets_before(out / RESULTS):
         for ending in _ENDINGS:
             if f"{number}.{ending}" not in files:
-                (out / f"{number}.{ending}").unlink(missing_ok=True)
+                remove(out / f"{number}.{ending}")
 
 
 def _sheets_before(path: Path) -> list[str]:

@@ -147,7 +147,7 @@ def test_adopted_value_less_safe_than_calculated_is_an_open_item(monkeypatch: py
 
 def test_adopted_value_of_a_table_line_is_refused(monkeypatch: pytest.MonkeyPatch) -> None:
     adopted = {"C_g": {"value": "0.5", "reason": "r", "by": "A.B.", "date": "2026-05-04"}}
-    with pytest.raises(SheetFault, match="C_g: an adopted value, but this sheet has no such step"):
+    with pytest.raises(SheetFault, match=r"C_g: adopted\.csv has a value for it, but this sheet has no such step"):
         motor_circuit(quiet_sheet(monkeypatch, {"adopted": adopted}))
 
 
@@ -163,7 +163,9 @@ def test_criterion_that_puts_a_datum_in_doubt_is_not_shown(monkeypatch: pytest.M
 
 def test_adopted_value_of_no_step_is_refused(monkeypatch: pytest.MonkeyPatch) -> None:
     adopted = {"I_L": {"value": "85 A", "reason": "r", "by": "A.B.", "date": "2026-05-04"}}
-    with pytest.raises(SheetFault, match="an adopted value, but this sheet has no such step; did you mean"):
+    with pytest.raises(
+        SheetFault, match=r"adopted\.csv has a value for it, but this sheet has no such step; did you mean"
+    ):
         motor_circuit(quiet_sheet(monkeypatch, {"adopted": adopted}))
 
 
