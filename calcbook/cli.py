@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import io
 import sys
 from pathlib import Path
 from typing import Annotated
@@ -10,10 +11,11 @@ import typer
 from rich.console import Console
 
 from calcbook import __version__
-from calcbook.errors import CalcbookError
+from calcbook.errors import CalcbookError, UsageFault
 
 app = typer.Typer(
     no_args_is_help=True,
+    context_settings={"help_option_names": ["-h", "--help"]},
     add_completion=False,
     pretty_exceptions_enable=False,
     rich_markup_mode=None,
@@ -39,7 +41,7 @@ def _version(
         raise typer.Exit
 
 
-@app.command()
+@app.command(short_help="Execute the sheets of PROJECT and publish them.")
 def run(
     project: Annotated[Path, typer.Argument(help="Folder with inputs.toml and circuits.csv.", show_default=False)],
     kernel: Annotated[
@@ -73,11 +75,16 @@ def templates(
     """
     from calcbook.report import print_templates
 
+    if project and not project.is_dir():
+        raise UsageFault(f"{project} is not a folder; a project is a folder with inputs.toml in it")
     print_templates(Console(), project)
 
 
 def main() -> None:
     """The entry point: every mistake of a user ends in one message and its exit code, never in a traceback."""
+    for stream in (sys.stdout, sys.stderr):  # a terminal or pipe may know fewer characters than the inputs hold
+        if isinstance(stream, io.TextIOWrapper):
+            stream.reconfigure(errors="backslashreplace")
     try:
         app()
     except CalcbookError as error:

@@ -10,6 +10,7 @@ from typing import Literal
 from calcbook.inputs.project import read_project
 from calcbook.plan.sheets import make_plan
 from calcbook.publish.package import publish
+from calcbook.records.files import make_folder
 from calcbook.records.line import InequalityLine, RuleLine
 from calcbook.records.printed_table import PrintedTable
 from calcbook.records.project import Plan, Project
@@ -57,8 +58,9 @@ def run_project(
     project = read_project(folder)
     plan = make_plan(project)
     on_plan(plan)
-    results = execute_all(plan, folder, engine, on_done)
     out = folder / "sheets"
+    make_folder(out)
+    results = execute_all(plan, folder, engine, on_done)
     publish(project, plan, results, _tables_used(project, results), out)
     return Run(project, results, out)
 

@@ -14,15 +14,15 @@ from typing import Any
 from IPython.display import display
 
 from calcbook.errors import CalcbookError, DimensionFault, SheetFault, nearest
-from calcbook.formulas.formula import Formula
+from calcbook.formulas.formula import Formula, written_out
 from calcbook.formulas.register import DERIVATIONS, formulas
+from calcbook.records.binding import argument, binding, keyed, quantities, symbol_of
 from calcbook.records.conclude import conclusion
 from calcbook.records.dimension import coherent_number, in_unit
 from calcbook.records.display import bundle
 from calcbook.records.given import Given, flat_parameters
 from calcbook.records.line import (
     Argument,
-    Binding,
     BroughtForwardLine,
     ChoiceLine,
     Citation,
@@ -34,6 +34,7 @@ from calcbook.records.line import (
     StepLine,
     TableLine,
     Valued,
+    Verdict,
 )
 from calcbook.records.notation import Name, named, names_of_parameter, out_of_range
 from calcbook.records.printed import print_calculated, print_given, print_number, tell_apart
@@ -41,7 +42,7 @@ from calcbook.records.quantity import Quantity, read_quantity
 from calcbook.records.recompute import judge, judge_rule
 from calcbook.records.trace import line_from_json, line_to_json
 from calcbook.records.value import Choice, Comparison, Value
-from calcbook.records.written.tree import Symbol, rename, symbols_of, write
+from calcbook.records.written.tree import rename, symbols_of, write
 from calcbook.reference.table import table, tables
 
 _UNPUBLISHED = "no published example"
@@ -68,7 +69,7 @@ class Sheet:
 
     def stated(self, *parameters: str, key: str = "") -> str:
         """The one parameter of several that is not empty: how the load is given."""
-        found = [name for name in parameters if self.parameters.get(_keyed(name, key), "").strip()]
+        found = [name for name in parameters if self.parameters.get(keyed(name, key), "").strip()]
         if len(found) != 1:
             what = " and ".join(found) or "none"
             raise self._fault("", f"exactly one of {', '.join(parameters)} is needed; stated: {what}")
@@ -86,7 +87,7 @@ class Sheet:
         kind, or out of its range.
         """
         entry = self._entry_of(parameter, symbol)
-        parameter = _keyed(parameter, key)
+        parameter = keyed(parameter, key)
         text = self._text_of(parameter, entry.name)
         try:
             quantity = read_quantity(text, entry.kind)
@@ -112,9 +113,9 @@ class Sheet:
         """
         entry = self._entry_of(parameter, symbol)
         for line in self.lines:
-            if line.label == _keyed(entry.name, key) and line.template != self.template and isinstance(line, Valued):
+            if line.label == keyed(entry.name, key) and line.template != self.template and isinstance(line, Valued):
                 return Value(line.label, line.value, line.si, line.text)
-        brought = self.given.brought(_keyed(parameter, key))
+        brought = self.given.brought(keyed(parameter, key))
         if brought is None:
             return self.datum(parameter, symbol, key)
         quantity, si, text, source = brought
@@ -133,7 +134,7 @@ class Sheet:
 
     def choice(self, parameter: str, description: str, key: str = "") -> Choice:
         """A word from the inputs, e.g. the method of installation; one that an earlier template made is taken."""
-        label = _keyed(parameter, key)
+        label = keyed(parameter, key)
         for line in self.lines:
             if isinstance(line, ChoiceLine) and line.label == label and line.template != self.template:
                 return Choice(line.label, line.text)
@@ -164,8 +165,8 @@ class Sheet:
 
         The same look-up by an earlier template of this workbook is taken.
         """
-        bound = tuple(_argument(argument, value) for argument, value in arguments.items())
-        earlier = self._looked_up_before(_keyed(name, key), table_key, bound)
+        bound = tuple(argument(name_of_key, value) for name_of_key, value in arguments.items())
+        earlier = self._looked_up_before(keyed(name, key), table_key, bound)
         if earlier is not None:
             return earlier
         source = table(table_key)
@@ -199,6 +200,7 @@ class Sheet:
                     row=found.row,
                     column=found.column,
                     status=found.status,
+                    conditions=source.header.get("conditions", ""),
                     signed_off=self.given.sign_off(source.title),
                     remark="; ".join(filter(None, (found.remark, other_edition))),
                 ),
@@ -221,13 +223,13 @@ class Sheet:
         Raises SheetFault where a symbol is unbound or unknown, a kind, unit or range does not fit, there is no
         finite value, or algebra and written form disagree.
         """
-        label = _keyed(name, key)
+        label = keyed(name, key)
         try:
             entry = named(name)
             if entry.kind != formula.result_name.kind:
                 raise self._fault(label, f"is {entry.kind}, formula {formula.name} gives {formula.result_name.kind}")
-            formula, bindings = _written_out(formula, bindings)
-            value, second = formula.evaluate({symbol: _quantities(bound) for symbol, bound in bindings.items()})
+            formula, bindings = written_out(formula, bindings)
+            value, second = formula.evaluate({symbol: quantities(bound) for symbol, bound in bindings.items()})
             adopted = self.given.adopted_value(entry, label)
             final = adopted.value if adopted else value
             _check_range(entry, final)
@@ -235,8 +237,9 @@ class Sheet:
             raise
         except CalcbookError as error:
             raise self._fault(label, str(error)) from error
-        tree = rename(formula.tree, {symbol: _symbol_of(bound) for symbol, bound in bindings.items()})
-        bound_by = {write(_symbol_of(bound)): bound for bound in bindings.values()}
+        tree = rename(formula.tree, {symbol: symbol_of(bound) for symbol, bound in bindings.items()})
+        bound_by = {write(symbol_of(bound)): bound for bound in bindings.values()}
+        unpublished = _UNPUBLISHED if formula.derivation and not formula.published else ""
         return self._valued(
             StepLine(
                 **self._identity(name, key),
@@ -246,23 +249,33 @@ class Sheet:
                 text=print_given(final) if adopted else print_calculated(final),
                 formula=formula.name,
                 written=write(tree),
-                bindings=tuple(_binding(label, bound_by[label]) for label in map(write, symbols_of(tree))),
+                bindings=tuple(binding(label, bound_by[label]) for label in map(write, symbols_of(tree))),
                 reference=self.given.dated(formula.reference),
                 second=second,
                 calculated=value,
                 calculated_text=print_calculated(value),
                 adopted=adopted,
-                remark="; ".join(filter(None, (remark, "" if formula.published else _UNPUBLISHED))),
+                valid=formula.valid,
+                remark="; ".join(filter(None, (remark, unpublished))),
             )
         )
 
-    def criterion(
-        self, name: str, comparison: Comparison, /, *, cite: str, description: str = "", headroom: Sequence[str] = ()
+    def criterion(  # noqa: PLR0913 - what a criterion says
+        self,
+        name: str,
+        comparison: Comparison,
+        /,
+        *,
+        cite: str,
+        description: str = "",
+        headroom: Sequence[str] = (),
+        otherwise: Verdict = "not met",
     ) -> None:
         """What must hold, as an inequality.
 
         `headroom` names parameters; the greatest change is worked out of the first of them that is a datum here.
         Temperatures are compared as (left <= right).over(ambient), sizes as (left >= right).of_sizes().
+        `otherwise` is the verdict where it does not hold: "not shown" where that puts a datum in doubt.
         """
         left, right, above = comparison.left, comparison.right, comparison.above
         utilisation, holds = judge(comparison.operator, left.si, right.si, 0.0 if above is None else above.si)
@@ -279,8 +292,9 @@ class Sheet:
                 right_text=right_text,
                 utilisation=utilisation,
                 utilisation_text=print_number(utilisation),
-                verdict="met" if holds else "not met",
+                verdict="met" if holds else otherwise,
                 reference=self.given.dated(cite),
+                otherwise=otherwise,
                 headroom_of=next((data[parameter] for parameter in headroom if parameter in data), ""),
                 above="" if above is None else above.label,
                 governs=comparison.governs,
@@ -310,6 +324,7 @@ class Sheet:
         for stage in subject.stages:
             try:
                 proof = "" if stage.is_premise else subject.prove(stage)
+                reached = subject.reached(stage)
             except CalcbookError as error:
                 raise self._fault(stage.name, str(error)) from error
             self._keep(
@@ -321,17 +336,19 @@ class Sheet:
                     standing="premise" if stage.is_premise else "proven",
                     reason=stage.reason,
                     proof=proof,
+                    reached=reached,
                     formula=stage.formula,
                 )
             )
 
     def conclude(self) -> None:
         """The end of the sheet: order of the criteria, governing one, headroom, open items, cautions."""
-        unused = [label for label in self.given.adopted if label not in {line.label for line in self.lines}]
+        steps = [line.label for line in self.lines if isinstance(line, StepLine)]
+        unused = [label for label in self.given.adopted if label not in steps]
         if unused:
-            steps = [line.label for line in self.lines if isinstance(line, StepLine)]
             raise self._fault(
-                unused[0], f"an adopted value, but this sheet has no such step; {nearest(unused[0], steps)}"
+                unused[0],
+                f"adopted.csv has a value for it, but this sheet has no such step; {nearest(unused[0], steps)}",
             )
         self._keep(conclusion(self._identity("conclusion"), self.lines, look_up))
 
@@ -383,45 +400,3 @@ def _check_range(entry: Name, quantity: Quantity) -> None:
     fault = out_of_range(entry, in_unit(coherent_number(quantity), entry.unit, entry.kind))
     if fault:
         raise DimensionFault(fault)
-
-
-def _argument(name: str, value: Value | Choice | str) -> Argument:
-    if isinstance(value, str):
-        return Argument(name=name, rests_on="", text=value)
-    quantity = value.quantity if isinstance(value, Value) else None
-    return Argument(name=name, rests_on=value.label, text=value.text, quantity=quantity)
-
-
-def _keyed(name: str, key: str) -> str:
-    return f"{name}[{key}]" if key else name
-
-
-def _written_out(
-    formula: Formula, bindings: Mapping[str, Value | Sequence[Value]]
-) -> tuple[Formula, dict[str, Value | Sequence[Value]]]:
-    """The formula with min( ) and max( ) over several lines written out, each line bound to a symbol of its own."""
-    found = dict(bindings)
-    extremes = {name: lines for name, lines in bindings.items() if not isinstance(lines, Value) and formula.spans(name)}
-    for name, lines in extremes.items():
-        del found[name]
-        found |= {f"{name}[{at}]": line for at, line in enumerate(lines, start=1)}
-    return (formula.over({name: len(lines) for name, lines in extremes.items()}) if extremes else formula), found
-
-
-def _quantities(bound: Value | Sequence[Value]) -> Quantity | list[Quantity]:
-    return bound.quantity if isinstance(bound, Value) else [value.quantity for value in bound]
-
-
-def _symbol_of(bound: Value | Sequence[Value]) -> Symbol:
-    """The symbol printed for what is bound: the line's own, or the name that several keyed lines share."""
-    if isinstance(bound, Value):
-        name, _, key = bound.label.partition("[")
-        return Symbol(name, key.rstrip("]"))
-    return Symbol(bound[0].label.partition("[")[0])
-
-
-def _binding(label: str, bound: Value | Sequence[Value]) -> Binding:
-    values = (bound,) if isinstance(bound, Value) else tuple(bound)
-    return Binding(
-        symbol=label, rests_on=tuple(value.label for value in values), texts=tuple(value.text for value in values)
-    )

@@ -15,9 +15,9 @@ ROOT = Path(__file__).resolve().parent.parent
 EXAMPLES = ROOT / "examples"
 
 
-def calcbook(*arguments: str, cwd: Path = ROOT) -> subprocess.CompletedProcess[str]:
+def calcbook(*arguments: str, cwd: Path = ROOT, **variables: str) -> subprocess.CompletedProcess[str]:
     command = [sys.executable, "-c", "from calcbook.cli import main; main()", *arguments]
-    environment = {**os.environ, "COLUMNS": "160", "PYTHONWARNINGS": "error"}
+    environment = {**os.environ, "COLUMNS": "160", "PYTHONWARNINGS": "error", **variables}
     return subprocess.run(command, cwd=cwd, env=environment, capture_output=True, text=True, check=False)
 
 
@@ -118,6 +118,15 @@ def test_a_place_that_cannot_be_written(tmp_path: Path) -> None:
     assert "Traceback" not in done.stderr
 
 
+def test_an_output_that_knows_fewer_characters_than_the_inputs(tmp_path: Path) -> None:
+    (tmp_path / "templates").mkdir()
+    text = (ROOT / "templates" / "derivations.ipynb").read_text("utf-8")
+    (tmp_path / "templates" / "own.ipynb").write_text(text.replace("subject of the", "Ω of the"), "utf-8")
+    done = calcbook("templates", str(tmp_path), PYTHONIOENCODING="ascii", PYTHONUTF8="0")
+    assert done.returncode == 0, done.stderr
+    assert r"\u03a9 of the derivation" in done.stdout
+
+
 def test_templates_are_listed_with_their_parameters() -> None:
     done = calcbook("templates")
     assert done.returncode == 0, done.stderr
@@ -128,6 +137,8 @@ def test_templates_are_listed_with_their_parameters() -> None:
 def test_usage_errors_and_help() -> None:
     assert calcbook("rnu").returncode == 2
     assert calcbook("run").returncode == 2
+    assert calcbook("-h").returncode == 0
+    assert "nowhere is not a folder; a project is" in calcbook("templates", "nowhere").stderr
     shown = calcbook("--help")
     assert shown.returncode == 0
     for text in ("run", "templates", "inputs.toml", "Exit code", "competent"):

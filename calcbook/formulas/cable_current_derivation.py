@@ -72,6 +72,8 @@ CABLE_CURRENT = Derivation(
               is_premise=True),
         Stage("other", "theta_max - theta_a", "R*R_th*(C*I_t)^2", "the cable at another ambient carries C times that",
               is_premise=True),
+        Stage("full", "theta_max - theta_a", "R*R_th*I_Z^2",
+              "the cable as installed, at its full capacity, reaches the greatest temperature", is_premise=True),
         Stage("C_a_f", "C", "sqrt((theta_max - theta_a)/(theta_max - theta_ref))",
               "the last line divided by the one before, solved for C", derived=_ambient_factor,
               formula="ambient_factor"),

@@ -8,8 +8,9 @@ from typing import Any
 
 import sympy
 
-from calcbook.errors import DimensionFault
+from calcbook.errors import DimensionFault, WrittenFormFault
 from calcbook.records.written.algebra import expression
+from calcbook.records.written.tree import parse
 
 
 @dataclass(frozen=True)
@@ -43,6 +44,17 @@ class Derivation:
         pairs = ((expression(stage.left), expression(stage.right)) for stage in self.stages if stage.is_premise)
         return {left: right for left, right in pairs if left.is_Symbol}
 
+    def reached(self, stage: Stage) -> str:
+        """The expression that the algebra reaches for `left`, as a written form; "" where the grammar has none."""
+        if stage.is_premise or stage.derived is None:
+            return ""
+        text = str(stage.derived()).replace("**", "^").replace("Abs(", "abs(").replace("Max(", "max(")
+        try:
+            parse(text)
+        except WrittenFormFault:
+            return ""
+        return "" if text == stage.right.replace(" ", "") else text
+
     def prove(self, stage: Stage) -> str:
         """Prove one stage; the sentence that is printed. Raises DimensionFault where the difference is not zero."""
         reached = stage.derived() if stage.derived else expression(stage.left)
@@ -53,7 +65,7 @@ class Derivation:
                 f"derivation {self.key}, {stage.name}: {stage.left} = {stage.right} is not proven; "
                 f"the difference is {remainder}"
             )
-        return "difference from the derived form simplified to 0"
+        return "its difference from what the algebra reaches simplifies to 0"
 
     def _expanded(self, reached: Any) -> Any:
         premises = self.premises()

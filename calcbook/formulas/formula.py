@@ -8,10 +8,12 @@ from functools import cached_property
 from typing import cast
 
 from calcbook.errors import DimensionFault
+from calcbook.records.binding import Bound
 from calcbook.records.dimension import coherent_number, in_unit
 from calcbook.records.notation import Name, named, out_of_range, range_in_words
 from calcbook.records.quantity import Quantity, read_quantity
 from calcbook.records.units import UNITS, kind_in_words
+from calcbook.records.value import Value
 from calcbook.records.written.algebra import number_function
 from calcbook.records.written.dimensions import check_dimensions
 from calcbook.records.written.evaluate import evaluate, rounding_scale
@@ -156,3 +158,13 @@ def _coherent(bound: Quantity | Sequence[Quantity]) -> float | list[float]:
 def _example(text: str, kind: str) -> Quantity | list[Quantity]:
     quantities = [read_quantity(part, kind) for part in text.split("; ")]
     return quantities if len(quantities) > 1 else quantities[0]
+
+
+def written_out(formula: Formula, bindings: Mapping[str, Bound]) -> tuple[Formula, dict[str, Bound]]:
+    """The formula with min( ) and max( ) over several lines written out, each line bound to a symbol of its own."""
+    found = dict(bindings)
+    extremes = {name: lines for name, lines in bindings.items() if not isinstance(lines, Value) and formula.spans(name)}
+    for name, lines in extremes.items():
+        del found[name]
+        found |= {f"{name}[{at}]": line for at, line in enumerate(lines, start=1)}
+    return (formula.over({name: len(lines) for name, lines in extremes.items()}) if extremes else formula), found

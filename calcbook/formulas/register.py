@@ -39,6 +39,12 @@ DERIVATIONS: dict[str, Derivation] = {
 
 
 @cache
+def calculated_names() -> frozenset[str]:
+    """The names of the notation list that a formula works out: the lines for which a value may be adopted."""
+    return frozenset(formula.result for formula in formulas().values())
+
+
+@cache
 def formulas() -> dict[str, Formula]:
     """The formulas by name, in the order of their modules."""
     found = (value for module in _MODULES for value in vars(module).values() if isinstance(value, Formula))

@@ -207,16 +207,16 @@ CURRENT_OF_APPARENT_POWER = _current(
     "Kosow, Electric Machinery and Transformers",
     "Sarma, Introduction to Electrical Engineering, 2001",
 )
-NEUTRAL_CURRENT_OF_MOTOR = _current(
-    "neutral_current_of_motor",
+LINE_TO_NEUTRAL_CURRENT_OF_MOTOR = _current(
+    "line_to_neutral_current_of_motor",
     "Line current of a motor connected line to neutral, from its shaft power.",
     "P_2/(U_rN*eta*cos_phi)",
     _SINGLE + "; efficiency and power factor at the shaft power given",
     Example({"P_2": "4.8 kW", "U_rN": "240 V", "eta": "0.8", "cos_phi": "0.625"}, "40.0 A"),
     "Bird, Electrical Circuit Theory and Technology",
 )
-NEUTRAL_CURRENT_OF_ACTIVE_POWER = _current(
-    "neutral_current_of_active_power",
+LINE_TO_NEUTRAL_CURRENT_OF_ACTIVE_POWER = _current(
+    "line_to_neutral_current_of_active_power",
     "Line current of a load connected line to neutral, from its active power.",
     "P_1/(U_rN*cos_phi)",
     _SINGLE,
@@ -225,8 +225,8 @@ NEUTRAL_CURRENT_OF_ACTIVE_POWER = _current(
     "Kuphaldt, Lessons in Electric Circuits, vol. II",
     "Mehta and Mehta, Principles of Power System",
 )
-NEUTRAL_CURRENT_OF_APPARENT_POWER = _current(
-    "neutral_current_of_apparent_power",
+LINE_TO_NEUTRAL_CURRENT_OF_APPARENT_POWER = _current(
+    "line_to_neutral_current_of_apparent_power",
     "Line current of a load connected line to neutral, from its apparent power.",
     "S_1/U_rN",
     _SINGLE,
@@ -281,8 +281,8 @@ APPARENT_POWER_OF_CURRENT = _apparent(
     Example({"U_r": "400 V", "I_a": "20 A"}, "13.86 kVA"),
     "Electrical Engineering Portal, transformer size and motor starting",
 )
-NEUTRAL_APPARENT_POWER_OF_CURRENT = _apparent(
-    "neutral_apparent_power_of_current",
+LINE_TO_NEUTRAL_APPARENT_POWER_OF_CURRENT = _apparent(
+    "line_to_neutral_apparent_power_of_current",
     "Apparent power of a line-to-neutral load that is given by its current.",
     "U_rN*I_a",
     _SINGLE,
@@ -300,18 +300,28 @@ NAMEPLATE_DIFFERENCE = Formula(
     name="nameplate_difference",
     purpose="How far the nameplate current lies from the calculated one.",
     result="d_I",
-    written="(I_np - I_L)/I_L",
-    valid="information; the nameplate current is used",
+    written="abs(I_np - I_L)/I_L",
+    valid="loads with a nameplate, whose current is used",
     reference="comparison",
     citation="definition of a relative difference",
     example=Example({"I_np": "81 A", "I_L": "80 A"}, "1.250 %"),
+)
+NAMEPLATE_TOLERANCE = Formula(
+    name="nameplate_tolerance",
+    purpose="Greatest difference of a nameplate current from the calculated one that puts no datum in doubt.",
+    result="d_max",
+    written="0.1",
+    valid="loads with a nameplate; above it one of the data is in doubt",
+    reference="common practice",
+    citation="common practice, no source",
+    example=Example({}, "10.00 %"),
 )
 DESIGN_CURRENT = Formula(
     name="design_current",
     purpose="Design current of the circuit: the line current of its load, with no demand factor.",
     result="I_B",
     written="I",
-    valid="a demand factor acts on what the board receives, never on a circuit's own design current",
+    valid="one circuit; a demand factor acts on what the board receives, never here",
     reference="IEC 60364-4-43, 433.1",
     citation="IEC 60364-4-43, 433.1; IEC 60364-1, 311",
     example=Example({"I": "81 A"}, "81.0 A"),
@@ -334,9 +344,9 @@ LINE_CURRENT: dict[tuple[str, str], Formula] = {
     ("three-phase", "shaft_power"): CURRENT_OF_MOTOR,
     ("three-phase", "active_power"): CURRENT_OF_ACTIVE_POWER,
     ("three-phase", "apparent_power"): CURRENT_OF_APPARENT_POWER,
-    ("line to neutral", "shaft_power"): NEUTRAL_CURRENT_OF_MOTOR,
-    ("line to neutral", "active_power"): NEUTRAL_CURRENT_OF_ACTIVE_POWER,
-    ("line to neutral", "apparent_power"): NEUTRAL_CURRENT_OF_APPARENT_POWER,
+    ("line to neutral", "shaft_power"): LINE_TO_NEUTRAL_CURRENT_OF_MOTOR,
+    ("line to neutral", "active_power"): LINE_TO_NEUTRAL_CURRENT_OF_ACTIVE_POWER,
+    ("line to neutral", "apparent_power"): LINE_TO_NEUTRAL_CURRENT_OF_APPARENT_POWER,
     ("two-line", "shaft_power"): TWO_LINE_CURRENT_OF_MOTOR,
     ("two-line", "active_power"): TWO_LINE_CURRENT_OF_ACTIVE_POWER,
     ("two-line", "apparent_power"): TWO_LINE_CURRENT_OF_APPARENT_POWER,
@@ -345,6 +355,6 @@ LINE_CURRENT: dict[tuple[str, str], Formula] = {
 #: connection -> formula of the apparent power of a load given by its current
 APPARENT_OF_CURRENT: dict[str, Formula] = {
     "three-phase": APPARENT_POWER_OF_CURRENT,
-    "line to neutral": NEUTRAL_APPARENT_POWER_OF_CURRENT,
+    "line to neutral": LINE_TO_NEUTRAL_APPARENT_POWER_OF_CURRENT,
     "two-line": TWO_LINE_APPARENT_POWER_OF_CURRENT,
 }

@@ -10,6 +10,9 @@ _CURRENT = "sqrt(2)*I_ph*cos(omega*t{shift} - phi)"
 _SHIFTS = ("", " - 2*pi/3", " - 4*pi/3")
 
 
+_OF_SINES = "the power factor of a sinusoidal load is the cosine of its phase angle"
+
+
 def _premises() -> list[Stage]:
     stages = [Stage("T", "T", "2*pi/omega", "period of the supply", is_premise=True)]
     for index, shift in enumerate(_SHIFTS, start=1):
@@ -22,7 +25,15 @@ def _premises() -> list[Stage]:
     for index, shift in enumerate(_SHIFTS, start=1):
         reason = "each current lags behind its voltage by the angle φ" if index == 1 else "the same"
         stages.append(Stage(f"i_{index}", f"i_{index}", _CURRENT.format(shift=shift), reason, is_premise=True))
-    stages.append(Stage("cos_phi", "cos_phi", "cos(phi)", "definition of the power factor", is_premise=True))
+    stages.append(
+        Stage(
+            "cos_phi",
+            "cos_phi",
+            "cos(phi)",
+            _OF_SINES,
+            is_premise=True,
+        )
+    )
     return stages
 
 
@@ -41,9 +52,9 @@ _STAGES = (
           "star: the voltage between lines is the difference of two phase voltages", formula="star_line_voltage"),
     Stage("delta_i", "sqrt(integral((i_1 - i_3)^2, t, 0, T)/T)", "sqrt(3)*I_ph",
           "delta: the line current is the difference of two phase currents", formula="delta_line_current"),
-    Stage("P_star", "P", _POWER, "star: each phase has the line voltage over √3 and the line current",
+    Stage("P_star", "P", _POWER, "star: U_ph = U/√3 and I_ph = I put into 3 U_ph I_ph cos φ",
           derived=lambda: put_into("3*U_ph*I_ph*cos_phi", U_ph="U/sqrt(3)", I_ph="I"), formula="active_power"),
-    Stage("P_delta", "P", _POWER, "delta: each phase has the line voltage and the line current over √3: the same",
+    Stage("P_delta", "P", _POWER, "delta: U_ph = U and I_ph = I/√3 put into 3 U_ph I_ph cos φ: the same",
           derived=lambda: put_into("3*U_ph*I_ph*cos_phi", U_ph="U", I_ph="I/sqrt(3)"), formula="active_power"),
     Stage("S_line", "S", "sqrt(3)*U*I", "apparent power: the active power at φ = 0",
           derived=lambda: put_into("sqrt(3)*U*I*cos(phi)", phi="0"), formula="apparent_power_of_line"),
@@ -62,13 +73,15 @@ _STAGES = (
           derived=lambda: solved_for("P_2", "eta*P_1", "P_1"), formula="input_power"),
     Stage("single", "integral(u_1*i_1, t, 0, T)/T", "U_ph*I_ph*cos(phi)",
           "one phase alone: the mean of u i over a period"),
+    Stage("S_single", "S", "U_ph*I_ph", "one phase alone: its apparent power, the active power at φ = 0",
+          derived=lambda: put_into("U_ph*I_ph*cos(phi)", phi="0")),
 )  # fmt: skip
 
 # connection -> active and apparent power in terms of the line current
 _OF_LINE = {
-    "three-phase": ("sqrt(3)*U_r*I_L*cos_phi", "sqrt(3)*U_r*I_L", "P = √3 U I cos φ"),
-    "line to neutral": ("U_rN*I_L*cos_phi", "U_rN*I_L", "one phase alone, P = U I cos φ"),
-    "two-line": ("U_r*I_L*cos_phi", "U_r*I_L", "one phase alone between two lines, P = U I cos φ"),
+    "three-phase": ("sqrt(3)*U_r*I_L*cos_phi", "sqrt(3)*U_r*I_L", "√3 U I"),
+    "line to neutral": ("U_rN*I_L*cos_phi", "U_rN*I_L", "U I"),
+    "two-line": ("U_r*I_L*cos_phi", "U_r*I_L", "U I"),
 }
 _GIVEN = {"shaft_power": "P_2/eta", "active_power": "P_1", "apparent_power": "S_1"}
 
@@ -78,25 +91,26 @@ def _line_currents() -> list[Stage]:
     for (connection, load), formula in LINE_CURRENT.items():
         active, apparent, reason = _OF_LINE[connection]
         power = apparent if load == "apparent_power" else active
+        law = f"S = {reason}" if load == "apparent_power" else f"P = {reason} cos φ"
         given = _GIVEN[load]
         stages.append(
             Stage(
                 formula.name,
                 "I_L",
                 formula.written,
-                f"{connection}: {reason} solved for I",
+                f"{connection}: {law} solved for I",
                 derived=lambda given=given, power=power: solved_for(given, power, "I_L"),  # type: ignore[misc]
                 formula=formula.name,
             )
         )
     for connection, formula in APPARENT_OF_CURRENT.items():
-        _, apparent, _ = _OF_LINE[connection]
+        _, apparent, reason = _OF_LINE[connection]
         stages.append(
             Stage(
                 formula.name,
                 "S_1",
                 formula.written,
-                f"{connection}: the load is given by its current",
+                f"{connection}: S = {reason} of a load given by its current",
                 derived=lambda apparent=apparent: put_into(apparent, I_L="I_a"),  # type: ignore[misc]
                 formula=formula.name,
             )

@@ -6,6 +6,7 @@ from collections import defaultdict
 from collections.abc import Collection
 
 from calcbook.errors import QuantityFault, nearest
+from calcbook.formulas.register import calculated_names
 from calcbook.inputs.faults import FaultList
 from calcbook.inputs.rows import Row, read_rows
 from calcbook.inputs.text import nearest_name, shown
@@ -62,6 +63,8 @@ def _read_row(row: Row, decimal: str) -> Adopted | None:
     line = row.text("line")
     if line and line not in notation():
         row.fault("line", f"{shown(line)} is not a line of the notation list; {nearest(line[:60], notation())}")
+    elif line and line not in calculated_names():
+        row.fault("line", f'"{line}" is not calculated; no value is adopted for it, change it where it is given')
     if row.wrong:
         return None
     entry = notation()[line]

@@ -5,11 +5,12 @@ from __future__ import annotations
 from collections.abc import Collection, Mapping
 from dataclasses import dataclass, field, replace
 
+from calcbook.inputs.against_basis import report_against_basis
 from calcbook.inputs.conditions import report_conditions
 from calcbook.inputs.faults import FaultList
 from calcbook.inputs.fields import fields_of
 from calcbook.inputs.fill import basis_ambient, fill_gaps, is_line_to_neutral, keyed
-from calcbook.inputs.installation import PLACE, report_installation, report_place_needed
+from calcbook.inputs.installation import PLACE, report_ambient_of_basis, report_installation, report_place_needed
 from calcbook.inputs.neutral import report_neutral
 from calcbook.inputs.notes import Notes
 from calcbook.inputs.refusals import report_refusals
@@ -63,11 +64,14 @@ def read_circuits(text: str, decimal: str, around: Surroundings, faults: FaultLi
         report_refusals(row)
         report_neutral(row)
         _report_places(row, around)
+        if around.complete:
+            report_against_basis(row, around.basis)
         circuits.unused |= unused & row.values.keys()
         _take(row, around, circuits)
-    if not rows:
+    if not rows and not faults.any_in(FILE):
         faults.add(FILE, "", "has no circuit")
-    references.check_circuits(circuits.columns)
+    if not faults.stopped(FILE):
+        references.check_circuits(circuits.columns)
     return circuits
 
 
@@ -83,6 +87,8 @@ def _report_places(row: Row, around: Surroundings) -> None:
         needed = basis_ambient(place.text("method"))
         if place.lacks("ambient") and around.known and needed not in around.basis:
             place.fault("ambient", f"is empty, and [basis] has no valid {needed}")
+        elif place.lacks("ambient") and around.known:
+            report_ambient_of_basis(place, row.text("insulation"), needed, around.basis[needed])
         row.wrong |= {"route"} if place is not row and place.wrong else set()
 
 

@@ -9,6 +9,10 @@ from calcbook.inputs.rows import Row
 LOADS = ("shaft_power", "active_power", "apparent_power", "current")
 _OF_LOADS = (*LOADS, "power_factor", "efficiency", "rated_current", "rated_voltage", "third_harmonic", "starter")
 _SMALLEST_ALUMINIUM = 2.5
+# IEC 60269-1, 5.3.1
+_GG_RATINGS = (
+    2, 4, 6, 8, 10, 12, 16, 20, 25, 32, 40, 50, 63, 80, 100, 125, 160, 200, 250, 315, 400, 500, 630, 800, 1000, 1250,
+)  # fmt: skip
 
 
 def _feeder(row: Row) -> None:
@@ -44,6 +48,20 @@ def _factors_of_load(row: Row) -> None:
         row.fault("efficiency", "is empty; a load given as shaft_power needs it")
     if power != "shaft_power" and (power or "current" in row.values) and row.text("efficiency"):
         row.fault("efficiency", "goes with shaft_power only: the other loads are what the circuit takes")
+
+
+def _current_and_nameplate(row: Row) -> None:
+    if row.text("current") and row.text("rated_current"):
+        found = f'current "{row.text("current")}" and rated_current "{row.text("rated_current")}"'
+        row.fault("rated_current", f"{found}: a load given by its current has no second one; write the one that counts")
+
+
+def _rating_of_fuse(row: Row) -> None:
+    for device, rating in (("device", "rating"), ("overload_device", "overload_setting")):
+        number = row.number(rating, "A")
+        if row.text(device) == "gG" and number is not None and number not in _GG_RATINGS:
+            allowed = ", ".join(f"{value:g}" for value in _GG_RATINGS)
+            row.fault(rating, f'"{row.text(rating)}" is no rated current of a gG fuse-link; allowed: {allowed} A')
 
 
 def _starter(row: Row) -> None:
@@ -104,6 +122,8 @@ _CONDITIONS: tuple[Callable[[Row], None], ...] = (
     _feeder,
     _one_load,
     _factors_of_load,
+    _current_and_nameplate,
+    _rating_of_fuse,
     _starter,
     _setting_of_breaker,
     _setting_of_overload_device,

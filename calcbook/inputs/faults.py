@@ -13,6 +13,7 @@ class FaultList:
     def __init__(self) -> None:
         """Begin with no fault."""
         self._faults: list[Fault] = []
+        self._stopped: set[str] = set()
 
     def add(self, file: str, place: str, message: str) -> None:
         """Note one fault; raises InputFaults at once when there are so many that reading on helps nobody."""
@@ -20,6 +21,15 @@ class FaultList:
         if len(self._faults) == MOST_FAULTS:
             self._faults.append(Fault(file, "", f"more than {MOST_FAULTS} faults; the rest was not read"))
             self.raise_if_any()
+
+    def stop(self, file: str, place: str, message: str) -> None:
+        """Note a fault after which a file is not read on."""
+        self._stopped.add(file)
+        self.add(file, place, message)
+
+    def stopped(self, file: str) -> bool:
+        """Whether a part of a file was not read."""
+        return file in self._stopped
 
     def any_in(self, file: str) -> bool:
         """Whether a file has a fault so far."""

@@ -33,7 +33,7 @@ class Column:
         value = self._read.get(cell)
         if value is None:
             value = read_value(self.field, cell, self.unit, decimal)
-            if isinstance(value, str) and decimal == "." and has_decimal_comma(cell):
+            if isinstance(value, str) and self.field.holds == "quantity" and decimal == "." and has_decimal_comma(cell):
                 value += _DECLARE_COMMAS.format(file=file)
             if self.field.holds not in {"tag", "text"}:
                 self._read[cell] = value
@@ -42,7 +42,10 @@ class Column:
 
 @dataclass(frozen=True)
 class Heads:
-    """The head row: a column for each cell, None where the head is empty or refused; `absent` needed columns."""
+    """The head row: a column for each cell, None where the head is empty or refused.
+
+    `absent` are columns that are missing though needed, or whose head is refused: nothing is said of their cells.
+    """
 
     columns: tuple[Column | None, ...]
     needed: frozenset[str]
@@ -51,9 +54,17 @@ class Heads:
     empty: frozenset[int]
 
 
-def read_heads(file: str, place: str, line: Line, faults: FaultList) -> Heads:
-    """The heads of a file whose columns are the fields of `place`; what is wrong with them is reported."""
+def read_heads(file: str, place: str, line: Line, faults: FaultList) -> Heads | None:
+    """The heads of a file whose columns are the fields of `place`; what is wrong with them is reported.
+
+    None where no cell is a head: then the file is not what it should be, and is not read on.
+    """
     read = [_column(head, place) for head in line.cells]
+    meant = {name for head, column in zip(line.cells, read, strict=True) for name in _meant(head, column)}
+    refused = meant & fields_of(place).keys()
+    if not refused and not any(isinstance(column, Column) for column in read):
+        _refuse_head_row(file, place, line, faults)
+        return None
     written: dict[str, str] = {}
     columns: list[Column | None] = []
     for number, column in enumerate(read, start=1):
@@ -69,10 +80,18 @@ def read_heads(file: str, place: str, line: Line, faults: FaultList) -> Heads:
         columns.append(None)
     needed = frozenset(name for name, field in fields_of(place).items() if field.needed)
     for name in fields_of(place):
-        if name in needed - written.keys() and not _meant(name, read):
+        if name in needed - written.keys() - refused:
             faults.add(file, f"row {line.number}", f'the column "{name}" is missing')
     empty = frozenset(number for number, column in enumerate(read) if column == "")
-    return Heads(tuple(columns), needed, needed - written.keys(), written, empty)
+    absent = (needed | refused) - written.keys()
+    return Heads(tuple(columns), needed, absent, written, empty)
+
+
+def _refuse_head_row(file: str, place: str, line: Line, faults: FaultList) -> None:
+    found = shown(line.cells[0])
+    first = ", ".join(list(fields_of(place))[:3])
+    hint = f"the first row that is no comment holds them ({first}, ...), separated by commas or semicolons"
+    faults.stop(file, f"row {line.number}", f"{found} begins a row without a head of a column; {hint}")
 
 
 def unknown_name(place: str, name: str) -> str:
@@ -110,9 +129,11 @@ def _column_with_unit(field: Field, head: str, unit: str) -> Column | str:
             return Column(field, head, check_unit(unit, kind))
         except QuantityFault as fault:
             wrong = fault.message
-    return wrong
+    return f"{shown(head)}: {wrong}"
 
 
-def _meant(name: str, read: list[Column | str]) -> bool:
-    """Whether a refused head already offers this column: then it is not reported as missing too."""
-    return any(isinstance(column, str) and f'"{name}"?' in column for column in read)
+def _meant(head: str, column: Column | str) -> set[str]:
+    """The names that a refused head may mean: the one it begins with, and the one that its message offers."""
+    if isinstance(column, Column):
+        return set()
+    return {head.strip().partition(" ")[0].partition("[")[0], *re.findall(r'did you mean "(\w+)"\?', column)}

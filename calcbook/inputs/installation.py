@@ -8,6 +8,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 from calcbook.inputs.rows import Row
+from calcbook.records.project import Datum
 
 PLACE = ("method", "grouping", "circuits_in_group", "ambient", "soil_resistivity", "depth", "trays", "spacing")
 IN_GROUND = ("D1", "D2")
@@ -131,6 +132,15 @@ def _ground(place: Row, cable: Row) -> None:
     if resistivity is not None and resistivity > _DRIEST_SOIL:
         found = f'"{place.text("soil_resistivity")}" is above the last row of Table B.52.16'
         place.fault("soil_resistivity", f"{found}, {_DRIEST_SOIL:g} K.m/W")
+
+
+def report_ambient_of_basis(place: Row, insulation: str, key: str, ambient: Datum) -> None:
+    """Report an ambient of the basis, taken where a place states none, that the insulation does not bear."""
+    hottest = _HOTTEST_AMBIENT.get(insulation)
+    if ambient.quantity is not None and hottest is not None and ambient.quantity.number > hottest:
+        table = "B.52.15" if place.text("method") in IN_GROUND else "B.52.14"
+        found = f"is empty, and {key} of [basis], {ambient.text}, is above the last row of Table {table}"
+        place.fault("ambient", f"{found} for {insulation}, {hottest:g} degC")
 
 
 def _ambient(place: Row, cable: Row) -> None:

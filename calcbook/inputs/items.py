@@ -3,10 +3,11 @@
 from __future__ import annotations
 
 import datetime
+import math
 
 from calcbook.inputs.fields import Field
 from calcbook.inputs.text import shown
-from calcbook.inputs.value import Value, read_value
+from calcbook.inputs.value import Value, read_date, read_value
 
 _LARGEST = 10**30
 
@@ -19,8 +20,8 @@ def read_item(field: Field, item: object) -> Value | str:
         return (
             Value("yes" if item else "no") if isinstance(item, bool) else f"{item_in_words(item)}; write true or false"
         )
-    if field.holds == "date" and isinstance(item, datetime.date) and not isinstance(item, datetime.datetime):
-        return Value(item.isoformat())
+    if field.holds == "date" and isinstance(item, datetime.date):
+        return read_date(str(item))
     if isinstance(item, int | float) and not isinstance(item, bool):
         return _read_bare_number(field, item)
     if not isinstance(item, str):
@@ -43,6 +44,8 @@ def item_in_words(item: object) -> str:
 
 def _read_bare_number(field: Field, number: float) -> Value | str:
     found = item_in_words(number)
+    if isinstance(number, float) and not math.isfinite(number):
+        return f"{found} is not a number"
     if field.holds != "quantity":
         return f"{found} is a number; write it as text, in quotation marks"
     if not set(field.kinds) & {"ratio", "count"}:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from contextlib import suppress
 from dataclasses import replace
 from pathlib import Path
 
@@ -13,11 +14,11 @@ from calcbook.inputs.faults import FaultList
 from calcbook.inputs.fields import fields_of
 from calcbook.inputs.fill import fill_basis, fill_board
 from calcbook.inputs.notes import Notes, read_notes
-from calcbook.inputs.refusals import report_refused_basis
+from calcbook.inputs.refusals import report_refused_basis, report_refused_boards
 from calcbook.inputs.routes import read_routes
 from calcbook.inputs.settings import TAGGED, Settings, read_settings
 from calcbook.inputs.source import read_source
-from calcbook.inputs.text import nearest_name, shown
+from calcbook.inputs.text import LONGEST_TEXT, nearest_name, shown
 from calcbook.records.project import Board, Datum, Project, Source
 
 
@@ -27,12 +28,13 @@ def read_project(folder: Path) -> Project:
     Parameters: `folder` with inputs.toml, circuits.csv and, where wanted, routes.csv, notes.csv and adopted.csv.
     Result: the Project. Raises InputFaults with every fault found; nothing is written.
     """
-    if not folder.is_dir():
-        raise InputFaults((Fault("", str(folder), "is not a folder; a project is a folder with inputs.toml in it"),))
+    names = _names_in(folder)
     faults = FaultList()
+    _report_capitals(names, faults)
     toml = read_source(folder, settings.FILE, faults, needed=True)
     said = (read_settings(toml, faults) if toml is not None else None) or Settings(readable=False)
     report_refused_basis(said.values.get("basis", {}), faults)
+    report_refused_boards({tag: said.values[tag] for tag in said.values if tag.startswith("boards.")}, faults)
     noted = read_notes(read_source(folder, notes.FILE, faults, needed=False), said.decimal(notes.FILE), faults)
     taken = read_adopted(read_source(folder, adopted.FILE, faults, needed=False), said.decimal(adopted.FILE), faults)
     data = _data(said, noted)
@@ -51,6 +53,27 @@ def read_project(folder: Path) -> Project:
         signed_off=said.signed_off,
         unused=_unused(folder, said, found),
     )
+
+
+def _names_in(folder: Path) -> list[str]:
+    """The names of the files in the project's folder, which is there and can be read."""
+    try:
+        names = sorted(path.name for path in folder.iterdir())
+        with suppress(FileNotFoundError):
+            (folder / settings.FILE).lstat()  # a folder may be listed and yet not be entered
+        return names
+    except (FileNotFoundError, NotADirectoryError):
+        wrong = "is not a folder; a project is a folder with inputs.toml in it"
+    except OSError as error:
+        wrong = f"cannot be read ({error.strerror})"
+    raise InputFaults((Fault("", shown(str(folder), LONGEST_TEXT)[1:-1], wrong),))
+
+
+def _report_capitals(names: list[str], faults: FaultList) -> None:
+    """Report files that would be passed over silently on one machine and read on another."""
+    for name in names:
+        if name != name.lower() and name.lower() in {settings.FILE, circuits.FILE, notes.FILE, adopted.FILE}:
+            faults.add(name, "", f"is not read; its name is written {name.lower()}, in small letters")
 
 
 def _data(said: Settings, noted: Notes) -> dict[str, dict[str, Datum]]:
@@ -91,7 +114,7 @@ def _report_what_stands_for_nothing(
     said: Settings, found: Circuits, noted: Notes, taken: AdoptedValues, faults: FaultList
 ) -> None:
     """Report names that nothing has; where a file could not be read at all, what refers to it is not judged."""
-    if not found.columns or not said.readable:
+    if not found.columns or not said.readable or faults.stopped(circuits.FILE):
         return
     taken.report_unknown(found.columns)
     sound = not faults.any_in(settings.FILE)

@@ -13,6 +13,12 @@ from calcbook.inputs.rows import Row
 from calcbook.inputs.value import Value
 
 UNSAFE = "is not covered yet, and leaving it out would be unsafe"
+_FREQUENCIES = (50.0, 60.0)
+_REFUSED_BOARDS: tuple[tuple[str, Callable[[Value], bool], str], ...] = (
+    ("derating", lambda value: value.quantity is not None and value.quantity.number < 1,
+     f"the derating of devices in a warm enclosure {UNSAFE}"),
+    ("ambient", lambda value: True, "is not taken over by circuits yet; state ambient in each circuit, or ambient_air"),
+)  # fmt: skip
 REFUSED_BASIS = {("practice", "nec"): 'practice "nec" is not covered yet; covered is "iec"'}
 
 
@@ -33,26 +39,12 @@ def _above(column: str, limit: float, unit: str) -> Callable[[Row], bool]:
     return lambda row: (row.number(column, unit) or 0) > limit
 
 
-def _neutral_loaded(row: Row) -> bool:
-    return row.text("phases") == "L1L2L3N"
-
-
-def _harmonics_unknown(row: Row) -> bool:
-    electronic = row.text("kind") in {"lighting", "charger"}
-    return electronic and _neutral_loaded(row) and row.lacks("third_harmonic")
-
-
 REFUSALS = (
     Refusal("kind", _says("kind", "capacitor"), f"the overcurrent of a capacitor {UNSAFE}"),
     Refusal("size", lambda row: row.lacks("size"), "choice of size is not covered yet; give a size"),
     Refusal("starter", _says("starter", "star_delta"), f"star-delta starting {UNSAFE}: six conductors, reclosing peak"),
     Refusal("starter", _says("starter", "converter"), f"a converter {UNSAFE}: its input current and its harmonics"),
     Refusal("insulation_covered", _above("insulation_covered", 0, "m"), f"thermal insulation around a cable {UNSAFE}"),
-    Refusal(
-        "third_harmonic",
-        _harmonics_unknown,
-        "is empty; kind {kind} on L1L2L3N needs it: an unknown third harmonic in the neutral would be unsafe",
-    ),
 )
 
 
@@ -68,3 +60,15 @@ def report_refused_basis(basis: Mapping[str, Value], faults: FaultList) -> None:
     for (key, word), sentence in REFUSED_BASIS.items():
         if key in basis and basis[key].text == word:
             faults.add("inputs.toml", f"[basis], {key}", sentence)
+    frequency = basis["frequency"].quantity if "frequency" in basis else None
+    if frequency is not None and frequency.number not in _FREQUENCIES:
+        found = f'"{basis["frequency"].text}" {UNSAFE}: the tables are for 50 and 60 Hz'
+        faults.add("inputs.toml", "[basis], frequency", found)
+
+
+def report_refused_boards(boards: Mapping[str, Mapping[str, Value]], faults: FaultList) -> None:
+    """Report what a board asks for that is not covered yet and would make its circuits less safe."""
+    for tag, values in boards.items():
+        for key, meets, sentence in _REFUSED_BOARDS:
+            if key in values and meets(values[key]):
+                faults.add("inputs.toml", f"[{tag}], {key}", sentence)

@@ -59,21 +59,32 @@ def read_rows(file: str, place: str, text: str, decimal: str, faults: FaultList)
         faults.add(file, "", "is empty; its first row holds the heads of its columns")
         return
     heads = read_heads(file, place, first, faults)
+    if heads is None:
+        return
     for count, line in enumerate(lines, start=1):
         if count > MOST_ROWS:
-            faults.add(file, f"row {line.number}", f"more than {MOST_ROWS} rows; the rest was not read")
+            faults.stop(file, f"row {line.number}", f"more than {MOST_ROWS} rows; the rest was not read")
             return
         row = Row(file, line.number, heads, faults)
-        surplus = [cell for cell in line.cells[len(heads.columns) :] if cell.strip()]
-        if surplus:
-            _refuse_surplus(row, line, heads, surplus[-1])
+        if _is_shifted(line, heads, file, decimal):
+            _refuse_shifted(row, line, heads)
         _read_cells(row, line, heads, file, decimal)
         yield row
 
 
-def _refuse_surplus(row: Row, line: Line, heads: Heads, last: str) -> None:
+def _is_shifted(line: Line, heads: Heads, file: str, decimal: str) -> bool:
+    """Whether a row has too many cells; empty ones at its end count only where the others do not fit their heads."""
+    surplus = line.cells[len(heads.columns) :]
+    if not surplus or any(cell.strip() for cell in surplus):
+        return bool(surplus)
+    cells = zip(heads.columns, line.cells, strict=False)
+    return any(column and cell.strip() and isinstance(column.read(cell, file, decimal), str) for column, cell in cells)
+
+
+def _refuse_shifted(row: Row, line: Line, heads: Heads) -> None:
     """Report a row with too many cells, once: what its cells hold would only be reported in the wrong columns."""
-    hint = "a comma within a number or a text splits a cell, unless the cell stands in quotation marks"
+    last = next(cell for cell in reversed(line.cells) if cell.strip())
+    hint = "a comma or semicolon within a number or a text splits a cell, unless the cell stands in quotation marks"
     row.fault("", f"{len(line.cells)} cells under {len(heads.columns)} heads, the last is {shown(last)}; {hint}")
     row.wrong.update(heads.written)
 

@@ -13,7 +13,7 @@ from calcbook.inputs.faults import FaultList
 from calcbook.inputs.fields import Field, fields_of
 from calcbook.inputs.heads import unknown_name
 from calcbook.inputs.items import item_in_words, read_item
-from calcbook.inputs.text import nearest_name, shown, wrong_tag, wrong_text
+from calcbook.inputs.text import LONGEST_TEXT, nearest_name, shown, wrong_tag, wrong_text
 from calcbook.inputs.value import Value, number_in
 from calcbook.records.project import SignOff, TitleBlock
 
@@ -22,6 +22,7 @@ TABLES = ("project", "basis", "files", "signed_off", "boards", "sources", "cases
 TAGGED = ("boards", "sources", "cases", "couplers")
 _CSV_FILES = ("circuits.csv", "routes.csv", "notes.csv", "adopted.csv")
 _PLACE_IN_TOML = re.compile(r"(.*) \(at (line \d+, column \d+|end of document)\)", re.DOTALL)
+_IN_WORDS = {"Cannot overwrite a value": "a key stands twice in its table"}
 
 
 @dataclass
@@ -85,14 +86,14 @@ def _parsed(text: str, faults: FaultList) -> dict[str, object] | None:
     except ValueError as error:
         match = _PLACE_IN_TOML.fullmatch(str(error))
         message, place = (match[1], match[2]) if match else ("a number is too long", "")
-        faults.add(FILE, place, f"is not valid TOML: {shown(message)[1:-1]}")
+        faults.add(FILE, place, f"is not valid TOML: {shown(_IN_WORDS.get(message, message), LONGEST_TEXT)[1:-1]}")
     return None
 
 
 def _tables_of(kind: str, item: object, faults: FaultList) -> Iterator[tuple[str, object]]:
     """The named tables under `[kind]`, those with a fault in their name left out."""
     if not isinstance(item, dict):
-        faults.add(FILE, f"[{kind}]", "is not a table")
+        faults.add(FILE, f"[{kind}]", f"is not a table of tables; each is written [{kind}.NAME], its keys below")
         return
     seen: dict[str, str] = {}
     for name, table in item.items():
@@ -140,6 +141,10 @@ def _flat(table: Mapping[str, object], fields: Mapping[str, Field]) -> Iterator[
             yield key, item
 
 
+#: the standards whose clauses sheets cite beside the tables, which carry their own edition
+_CITED = ("IEC 60364-4-43", "IEC 60364-5-52")
+
+
 def _read_editions(basis: object, faults: FaultList) -> dict[str, str]:
     table = basis.get("editions") if isinstance(basis, dict) else {}
     if table == {} and not isinstance(basis, dict):
@@ -158,6 +163,9 @@ def _read_editions(basis: object, faults: FaultList) -> dict[str, str]:
             editions[standard] = str(edition).strip()
         if wrong:
             faults.add(FILE, "[basis.editions]", wrong)
+    for standard in _CITED:
+        if standard not in table:
+            faults.add(FILE, "[basis.editions]", f'"{standard}" is missing; sheets cite it with its edition')
     return editions
 
 

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import codecs
+import os
 from pathlib import Path
 
 from calcbook.inputs.faults import FaultList
@@ -14,7 +15,7 @@ LARGEST = {".toml": 2**20, ".csv": 64 * 2**20}
 def read_source(folder: Path, name: str, faults: FaultList, *, needed: bool) -> str | None:
     """The text of `folder/name`; None, with a fault where that is one, when there is none to be had."""
     path = folder / name
-    if not needed and not path.exists():
+    if not needed and not os.path.lexists(path):
         return None
     try:
         if path.stat().st_size > LARGEST[path.suffix]:
@@ -38,7 +39,7 @@ def _decoded(name: str, data: bytes, faults: FaultList) -> str | None:
         row = data.count(b"\n", 0, place) + 1
         faults.add(
             name,
-            f"row {row}",
+            f"{'line' if name.endswith('.toml') else 'row'} {row}",
             f"is not UTF-8: byte {place + 1} of the file is 0x{data[place]:02X}; save the file with the encoding UTF-8",
         )
         return None

@@ -9,6 +9,8 @@ from dataclasses import dataclass
 
 from calcbook.inputs.faults import FaultList
 
+_COMMENT = ("#", '"#')
+
 
 @dataclass(frozen=True)
 class Line:
@@ -19,7 +21,8 @@ class Line:
 
 
 def read_lines(file: str, text: str, faults: FaultList) -> Iterator[Line]:
-    """The rows of a CSV text, the heads first; comments (`#` at the beginning) and blank rows are left out.
+    """The rows of a CSV text, the heads first; comments and blank rows are left out. A comment begins with `#`, which a
+    spreadsheet may have put in quotation marks.
 
     The separator is the semicolon where the heads have one, else the comma. Text that breaks the rules of quotes is a
     fault and ends the rows.
@@ -34,7 +37,7 @@ def read_lines(file: str, text: str, faults: FaultList) -> Iterator[Line]:
             return
         except csv.Error as error:
             wrong = "a cell is far too long" if "limit" in str(error) else "text follows a closed quotation mark"
-            faults.add(file, f"row {numbered.first}", f"{wrong}, or a quotation mark is not closed")
+            faults.stop(file, f"row {numbered.first}", f"{wrong}, or a quotation mark is not closed")
             return
         if any(cell.strip() for cell in cells):
             yield Line(numbered.first, cells)
@@ -52,7 +55,7 @@ class _NumberedLines:
 
     def __next__(self) -> str:
         for number, line in self._lines:
-            if line.startswith("#"):
+            if line.startswith(_COMMENT):
                 continue
             self.first = self.first or number
             return line
@@ -61,6 +64,6 @@ class _NumberedLines:
 
 def _separator(text: str) -> str:
     for line in io.StringIO(text, newline=""):
-        if line.strip(" \r\n;,") and not line.startswith("#"):
+        if line.strip(" \r\n;,") and not line.startswith(_COMMENT):
             return ";" if ";" in line else ","
     return ","

@@ -31,10 +31,10 @@ _OWN_NAMES = ("index", "package", "inputs", "tables", "cover", "register", "basi
 _OWN_BEGINNINGS = ("d-", "boards.", "sources.", "cases.", "couplers.")
 
 
-def shown(text: str) -> str:
+def shown(text: str, longest: int = _LONGEST_SHOWN) -> str:
     """A found value as a message shows it: in quotes, shortened, what cannot be printed as its code point."""
-    short = text if len(text) <= _LONGEST_SHOWN else text[: _LONGEST_SHOWN - 3] + "..."
-    return '"' + _REFUSED.sub(lambda match: f"<{_code_point(match[0])}>", short) + '"'
+    short = text if len(text) <= longest else text[: longest - 3] + "..."
+    return '"' + "".join(one if one.isprintable() else f"<{_code_point(one)}>" for one in short) + '"'
 
 
 def wrong_characters(text: str) -> str:

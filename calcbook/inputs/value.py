@@ -14,6 +14,8 @@ from calcbook.records.quantity import Quantity, read_quantity
 
 _DECIMAL_COMMA = re.compile(r"[+-]?\d*,\d+(?=[eE\s]|$)", re.ASCII)
 _ISO_DATE = re.compile(r"\d{4}-\d\d-\d\d", re.ASCII)
+# wider than any value of an installation, narrower than what products and powers of floats bear
+_LEAST, _GREATEST = 1e-9, 1e12
 
 
 @dataclass(frozen=True)
@@ -108,6 +110,8 @@ def _wrong_number(field: Field, text: str, number: float) -> str:
         )
     if field.kinds == ("count",) and not field.choices and not number.is_integer():
         return f"{shown(text)} is not a whole number"
+    if number and not _LEAST <= abs(number) <= _GREATEST:
+        return f"{shown(text)} is far from any value of an installation"
     if not within(field.range, number):
         unit = "" if field.unit == "1" or field.range in {">0", ">=0"} else f" {field.unit}"
         return f"{shown(text)} is out of range; allowed is {range_in_words(field.range)}{unit}"
@@ -118,7 +122,7 @@ def _read_words(field: Field, words: tuple[str, ...]) -> Value | str:
     for word in words:
         if word not in field.choices:
             question = nearest(word, field.choices)
-            listed = ", ".join(field.choices)
+            listed = ", ".join(choice if choice.strip(".,") else f'"{choice}"' for choice in field.choices)
             found = f"{shown(word)} is not allowed; "
             return found + (f"{question} Allowed: {listed}" if question.startswith("did") else f"allowed: {listed}")
     return Value(" ".join(words))

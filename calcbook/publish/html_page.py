@@ -9,6 +9,7 @@ from jinja2 import Environment, FileSystemLoader, StrictUndefined
 from markupsafe import Markup
 
 from calcbook.publish import cautions
+from calcbook.publish.view import signature
 from calcbook.records.written import mathml
 
 _PARTS = Path(__file__).resolve().parent / "html_parts"
@@ -33,6 +34,7 @@ def _environment() -> Environment:
     environment.globals.update(
         style=Markup(style),  # noqa: S704 - our own file
         symbol=symbol,
+        signature=signature,
         general_cautions=cautions.GENERAL,
         not_for_issue=cautions.NOT_FOR_ISSUE,
     )

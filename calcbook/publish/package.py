@@ -18,7 +18,7 @@ from calcbook.publish.sheet_html import sheet_html
 from calcbook.publish.sheet_pdf import sheet_pdf
 from calcbook.publish.sheet_view import Context, sheet_view
 from calcbook.publish.view import SheetView
-from calcbook.records.files import write_atomically
+from calcbook.records.files import remove, write_atomically
 from calcbook.records.line import DerivationLine
 from calcbook.records.printed_table import PrintedTable
 from calcbook.records.project import Plan, Project
@@ -95,7 +95,7 @@ def _remove_stale(out: Path, files: Mapping[str, object]) -> None:
         stale = [out / f"{number}.{ending}" for ending in _ENDINGS]
         for path in (*stale, *out.glob(f"{number}~*.ipynb")):
             if path.name not in files:
-                path.unlink(missing_ok=True)
+                remove(path)
 
 
 def _sheets_before(path: Path) -> list[str]:

@@ -123,6 +123,8 @@ def _table_value(line: TableLine, setting: Setting) -> WorkRow:
     notes = [sentence("; ".join(text for text in (cell, citation.remark, compared(citation)) if text))]
     if line.arguments:
         notes.append(_arguments(line.arguments))
+    if citation.conditions:
+        notes.append(sentence(citation.conditions))
     return WorkRow(
         anchor=anchors.anchor(line.label),
         reference=(sentence(standard), sentence(numbered(citation.table))),
@@ -172,6 +174,8 @@ def _step(line: StepLine, setting: Setting) -> WorkRow:
     if line.bindings:
         equations.append(Equation(None, "=", Formula(node, texts_of(line), links)))
     notes = [_terms(binding.rests_on, binding.texts) for binding in line.bindings if len(binding.rests_on) > 1]
+    if line.valid:
+        notes.append(prose(f"holds for: {line.valid}"))
     if line.remark:
         notes.append(prose(line.remark))
     own = anchors.to_line(line.label)
@@ -279,12 +283,13 @@ def _criterion(
 
 
 def _derivation(line: DerivationLine) -> WorkRow:
+    reached = (Equation(Span("algebra: "), "", Formula(parse(line.reached))),) if line.reached else ()
     standing: Paragraph = (Span(line.standing),)
     return WorkRow(
         anchor=anchors.anchor(line.label),
         reference=(sentence(f"formula: {line.formula.replace('_', ' ')}"),) if line.formula else (),
         description=prose(line.reason),
-        equations=(Equation(Formula(parse(line.left)), "=", Formula(parse(line.right))),),
+        equations=(Equation(Formula(parse(line.left)), "=", Formula(parse(line.right))), *reached),
         notes=(),
         result=(standing, sentence(line.proof)) if line.proof else (standing,),
     )

@@ -23,6 +23,7 @@ from calcbook.publish.view import (
     Span,
     Summary,
     WorkRow,
+    signature,
 )
 from calcbook.records.project import TitleBlock
 from calcbook.records.written import typst as print_typst
@@ -89,8 +90,8 @@ def fields_of(block: TitleBlock) -> dict[str, Literal]:
         "state": block.state,
         "date": block.date,
         "prepared": block.prepared,
-        "checked": block.checked,
-        "approved": block.approved,
+        "checked": signature(block, block.checked),
+        "approved": signature(block, block.approved),
     }
 
 
@@ -102,6 +103,8 @@ def day_of(block: TitleBlock) -> date:
 def _summary(summary: Summary) -> Literal:
     return {
         "verdict": summary.verdict,
+        "examined": summary.examined,
+        "adopted": [paragraph(line) for line in summary.adopted],
         "governing": paragraph(summary.governing),
         "criteria": [
             {

@@ -20,6 +20,7 @@ from calcbook.records.line import (
     InequalityLine,
     Line,
     RuleLine,
+    StepLine,
     Valued,
 )
 from calcbook.records.notation import notation
@@ -60,7 +61,7 @@ def sheet_view(notebook: Mapping[str, Any], context: Context, failure: Failure |
         block=context.block,
         version=_version(notebook),
         sections=tuple(_sections(notebook["cells"], setting)),
-        summary=_summary(conclusion, trace.lines) if conclusion else None,
+        summary=_summary(conclusion, trace.lines, _subjects(notebook["cells"])) if conclusion else None,
         caution=cautions.of_tables(trace.lines),
         failure=failure or _failure(notebook["cells"]),
     )
@@ -152,12 +153,20 @@ def _section(heading: _Heading, parts: Sequence[_Part], setting: Setting) -> Sec
     )
 
 
-def _summary(conclusion: ConclusionLine, lines: Sequence[Line]) -> Summary:
+def _subjects(cells: Sequence[Mapping[str, Any]]) -> str:
+    """The headings of the first level, which name what a sheet examines."""
+    headings = (part for part in _parts(cells) if isinstance(part, _Heading) and part.level == 1)
+    return "; ".join("".join(span.text for span in heading.title).lower() for heading in headings)
+
+
+def _summary(conclusion: ConclusionLine, lines: Sequence[Line], subjects: str) -> Summary:
     by_label = {line.label: line for line in lines}
     criteria = [by_label[label] for label in conclusion.order]
     governing = by_label.get(conclusion.governing)
     return Summary(
         verdict=_VERDICTS[conclusion.verdict] if conclusion.order else "this sheet has no criteria",
+        examined=f"{subjects}; nothing else is judged here" if subjects and conclusion.order else "",
+        adopted=tuple(_adopted(line) for line in lines if isinstance(line, StepLine) and line.adopted),
         governing=_in_short(governing) if isinstance(governing, InequalityLine | RuleLine) else (),
         criteria=tuple(
             _criterion_row(line, "governs" if line.label == conclusion.governing else "does not govern")
@@ -168,6 +177,12 @@ def _summary(conclusion: ConclusionLine, lines: Sequence[Line]) -> Summary:
         open_items=conclusion.open_items,
         cautions=conclusion.cautions,
     )
+
+
+def _adopted(line: StepLine) -> Paragraph:
+    own = anchors.to_line(line.label)
+    calculated = (Span(" in place of "), Span(line.calculated_text, own))
+    return (Span(line.label, symbol=True), Span(" = "), Span(line.text, own), *calculated)
 
 
 def _in_short(line: CriterionLine) -> Paragraph:

@@ -107,9 +107,11 @@ class HeadroomRow:
 
 @dataclass(frozen=True)
 class Summary:
-    """The end of a sheet; `verdict` in a sentence."""
+    """The end of a sheet; `verdict` in a sentence, `examined` the subjects it speaks of, `adopted` one line a value."""
 
     verdict: str
+    examined: str
+    adopted: tuple[Paragraph, ...]
     governing: Paragraph
     criteria: tuple[CriterionRow, ...]
     headrooms: tuple[HeadroomRow, ...]
@@ -129,3 +131,8 @@ class SheetView:
     summary: Summary | None
     caution: str
     failure: Failure | None
+
+
+def signature(block: TitleBlock, name: str) -> str:
+    """A name in the title block for check or approval: of a draft it says that the person has not signed yet."""
+    return f"{name}, not yet" if name and block.state == "draft" else name

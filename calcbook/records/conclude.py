@@ -18,7 +18,7 @@ from calcbook.records.line import (
     TableLine,
     Verdict,
 )
-from calcbook.records.recompute import LookUp
+from calcbook.records.recompute import LookUp, recompute
 
 
 def conclusion(identity: Mapping[str, Any], lines: Sequence[Line], look_up: LookUp) -> ConclusionLine:
@@ -37,7 +37,7 @@ def conclusion(identity: Mapping[str, Any], lines: Sequence[Line], look_up: Look
         governing=order[0].label if order else "",
         order=tuple(line.label for line in order),
         headrooms=tuple(room for room in rooms if room is not None),
-        open_items=tuple(_open_items(lines)),
+        open_items=(*_open_items(lines), *_less_safe(lines, look_up)),
         cautions=tuple(_cautions(lines)),
     )
 
@@ -64,6 +64,26 @@ def _open_items(lines: Sequence[Line]) -> list[str]:
             remark = f" ({line.origin.remark})" if line.origin.remark else ""
             items.append(f"{line.description} {line.text or 'not stated'}: {line.origin.status}, {place}{remark}")
     return items
+
+
+def _less_safe(lines: Sequence[Line], look_up: LookUp) -> list[str]:
+    """Adopted values that make a criterion easier to meet than the calculated value would."""
+    found = []
+    for line in lines:
+        if not isinstance(line, StepLine) or line.adopted is None:
+            continue
+        calculated = recompute(lines, {line.label: line.calculated}, look_up)
+        harder = [
+            other.label
+            for other in lines
+            if isinstance(other, InequalityLine) and calculated.utilisations[other.label] > other.utilisation
+        ]
+        if harder:
+            found.append(
+                f"{line.description} {line.text} adopted: less safe than the calculated {line.calculated_text} for "
+                f"{', '.join(harder)}"
+            )
+    return found
 
 
 def _cautions(lines: Sequence[Line]) -> list[str]:

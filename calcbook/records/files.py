@@ -26,3 +26,21 @@ def write_atomically(path: Path, content: str | bytes) -> None:
         if temporary:
             Path(temporary).unlink(missing_ok=True)
         raise WorkspaceFault(f"{path}: cannot be written ({error.strerror or error})") from error
+
+
+def remove(path: Path) -> None:
+    """Remove a file where there is one; raises WorkspaceFault where the disk refuses or a folder has its name."""
+    try:
+        path.unlink(missing_ok=True)
+    except OSError as error:
+        raise WorkspaceFault(f"{path}: cannot be removed ({error.strerror or error})") from error
+
+
+def make_folder(path: Path) -> None:
+    """Make a folder that files will be written into, and try it; raises WorkspaceFault where the disk refuses."""
+    try:
+        path.mkdir(parents=True, exist_ok=True)
+        with tempfile.TemporaryFile(dir=path):
+            pass
+    except OSError as error:
+        raise WorkspaceFault(f"{path}: cannot be written to ({error.strerror or error})") from error

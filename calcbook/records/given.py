@@ -66,7 +66,8 @@ class Given:
 
 def flat_parameters(parameters: Mapping[str, Any]) -> dict[str, str]:
     """The texts among a notebook's names; a repeated parameter, a dict of texts by key, as "name[key]"."""
-    flat = {name: value for name, value in parameters.items() if isinstance(value, str)}
+    plain = (str, int, float)  # `papermill -p runs 2` hands over a number
+    flat = {name: str(value) for name, value in parameters.items() if type(value) in plain and not name.startswith("_")}
     for group in (value for name, value in parameters.items() if isinstance(value, dict) and name != "given"):
         for key, texts in group.items():
             if isinstance(texts, dict):

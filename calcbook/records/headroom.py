@@ -12,11 +12,12 @@ import sympy
 from calcbook.errors import CalcbookError, DimensionFault
 from calcbook.records.dimension import factor, in_unit
 from calcbook.records.line import DatumLine, Headroom, InequalityLine, Line, StepLine, TableLine, Valued
-from calcbook.records.printed import print_calculated
+from calcbook.records.printed import print_rounded
 from calcbook.records.quantity import Quantity
 from calcbook.records.recompute import LookUp, recompute
 from calcbook.records.written.algebra import expression, symbol
 
+Unknown = DatumLine | StepLine  # a datum, or a step with an adopted value
 _FARTHEST = 1000.0
 _HALVINGS = 60
 _EXTREMES = (sympy.Min, sympy.Max, sympy.Piecewise)
@@ -28,13 +29,19 @@ def headroom(lines: Sequence[Line], criterion: InequalityLine, look_up: LookUp) 
     The limit is searched from the present value to a thousandth and a thousand times of it. Raises DimensionFault
     where recomputation and algebra disagree by more than 1e-9.
     """
-    datum = next((line for line in lines if line.label == criterion.headroom_of and isinstance(line, DatumLine)), None)
-    if datum is None:
+    by_label = {line.label: line for line in lines}
+    datum = by_label.get(criterion.headroom_of)
+    if not isinstance(datum, DatumLine):
+        return None
+    sides = (criterion.left, criterion.right)
+    if not any(_rests_on(by_label, side, datum.label) for side in sides):
+        adopted = [label for side in sides for label in _adopted_below(by_label, side)]
+        if not adopted:
+            return None
+        datum = by_label[adopted[0]]  # the adopted value stands between, and is what may move
+    if not isinstance(datum, DatumLine | StepLine):
         return None
     make = partial(Headroom, criterion=criterion.label, datum=datum.label, present_text=datum.text)
-    by_label = {line.label: line for line in lines}
-    if not any(_rests_on(by_label, side, datum.label) for side in (criterion.left, criterion.right)):
-        return make(limit=None, limit_text="", solved=None, remark="an adopted value stands between; it does not move")
     limit = _turning_point(lines, criterion, datum, look_up)
     if limit is None:
         reach = "holds" if criterion.verdict == "met" else "is not met"
@@ -44,14 +51,37 @@ def headroom(lines: Sequence[Line], criterion: InequalityLine, look_up: LookUp) 
     solved = _solved(lines, criterion, datum, limit)
     if solved is not None and not math.isclose(solved, limit, rel_tol=1e-9):
         raise DimensionFault(f"headroom of {criterion.label}: recomputation gives {limit!r}, algebra {solved!r}")
-    remark = "" if solved is None else "also solved by algebra"
-    return make(limit=quantity, limit_text=print_calculated(quantity, 4), solved=solved, remark=remark)
+    remarks = [
+        "" if criterion.verdict == "met" else "must come to this limit for the criterion to be met",
+        "the adopted value" if isinstance(datum, StepLine) else "",
+        "" if solved is None else "also solved by algebra",
+    ]
+    text = print_rounded(quantity, up=_holds_above(lines, criterion, datum, look_up, limit))
+    return make(limit=quantity, limit_text=text, solved=solved, remark="; ".join(filter(None, remarks)))
+
+
+def _holds_above(
+    lines: Sequence[Line], criterion: InequalityLine, datum: Unknown, look_up: LookUp, limit: float
+) -> bool:
+    """Whether the criterion holds above the limit and not below: the limit is then printed rounded up."""
+    above = _Trial(lines, criterion, datum, look_up).utilisation(limit * (1 + 1e-9) + 1e-12)
+    return above is not None and above <= 1
+
+
+def _adopted_below(by_label: dict[str, Line], label: str) -> list[str]:
+    """The adopted values that a line rests on, itself included."""
+    line = by_label.get(label)
+    if not isinstance(line, StepLine):
+        return []
+    if line.adopted:
+        return [label]
+    return [found for binding in line.bindings for part in binding.rests_on for found in _adopted_below(by_label, part)]
 
 
 class _Trial:
     """Whether the criterion holds with the datum at another value; None where it cannot be worked out."""
 
-    def __init__(self, lines: Sequence[Line], criterion: InequalityLine, datum: DatumLine, look_up: LookUp) -> None:
+    def __init__(self, lines: Sequence[Line], criterion: InequalityLine, datum: Unknown, look_up: LookUp) -> None:
         self.lines, self.criterion, self.datum, self.look_up = lines, criterion, datum, look_up
 
     def utilisation(self, number: float) -> float | None:
@@ -64,7 +94,7 @@ class _Trial:
         return done.utilisations[self.criterion.label]
 
 
-def _turning_point(lines: Sequence[Line], criterion: InequalityLine, datum: DatumLine, look_up: LookUp) -> float | None:
+def _turning_point(lines: Sequence[Line], criterion: InequalityLine, datum: Unknown, look_up: LookUp) -> float | None:
     trial = _Trial(lines, criterion, datum, look_up)
     met = criterion.verdict == "met"
     for ratio in (2.0, 0.5):
@@ -106,26 +136,22 @@ def _bisect(trial: _Trial, inside: float, outside: float, met: bool) -> float:
     return inside if met else outside
 
 
-def _solved(lines: Sequence[Line], criterion: InequalityLine, datum: DatumLine, near: float) -> float | None:
-    """The solution of left = right for the datum that lies nearest to `near`; None where algebra finds none."""
+def _solved(lines: Sequence[Line], criterion: InequalityLine, datum: Unknown, near: float) -> float | None:
+    """The solution of left = right for the datum that lies nearest to `near`.
+
+    None where the equation is no polynomial in the datum: under a root or in a min( ) it takes algebra minutes.
+    """
     by_label = {line.label: line for line in lines}
     unknown = symbol(datum.label)
     try:
         left, right = (_in_terms_of(by_label, side, datum.label) for side in (criterion.left, criterion.right))
-        if _is_laborious(left - right, unknown):
-            return None
-        solutions = [complex(solution) for solution in sympy.solve(left - right, unknown, rational=False)]
-    except (NotImplementedError, _NotAlgebraicError, TypeError):
+        numerator = sympy.numer(sympy.together(left - right))
+        solutions = [complex(root) for root in sympy.Poly(numerator, unknown).nroots()]
+    except (sympy.PolynomialError, _NotAlgebraicError, TypeError):  # a root or a min( ) of the datum: not solved
         return None
     real = [solution.real for solution in solutions if abs(solution.imag) <= 1e-12 * abs(solution.real)]
     best = min(real, key=lambda number: abs(number - near), default=None)
     return best if best is not None and math.isclose(best, near, rel_tol=1e-6) else None
-
-
-def _is_laborious(difference: Any, unknown: Any) -> bool:
-    """Whether the datum stands under a root and beside it: that takes algebra minutes."""
-    roots = [part for part in difference.atoms(sympy.Pow) if not part.exp.is_integer and part.base.has(unknown)]
-    return bool(roots) and difference.count(unknown) > 1
 
 
 class _NotAlgebraicError(Exception):

@@ -76,6 +76,7 @@ class Citation:
     row: str
     column: str
     status: str
+    conditions: str = ""
     signed_off: SignOff | None = None
     remark: str = ""
 
@@ -123,7 +124,8 @@ class StepLine(Valued):
 
     `written` is the form with the symbols of the lines it rests on; `formula` names its page; `calculated` and
     `calculated_text` stand beside `value` when the engineer adopted another; `second` is the number of the written
-    form evaluated beside the algebra's; `reference` is the clause printed in the left column.
+    form evaluated beside the algebra's; `reference` is the clause printed in the left column;
+    `valid` says for what the formula holds.
     """
 
     form: Literal["step"] = "step"
@@ -135,6 +137,7 @@ class StepLine(Valued):
     calculated: Quantity
     calculated_text: str
     adopted: Adopted | None = None
+    valid: str = ""
     remark: str = ""
 
 
@@ -145,7 +148,8 @@ class InequalityLine(Identity):
     `utilisation` is left over right for <= and right over left for >=; above 1 is not met. `headroom_of` is the label
     of the datum whose greatest change is worked out where this criterion governs. `above` is the label of a line that
     both sides of the utilisation are reckoned from: of temperatures the rise over ambient counts. `governs` is false
-    where sizes are compared, which go in steps: only where it is not met does the utilisation say anything.
+    where sizes are compared, which go in steps: only where it is not met does the utilisation say anything. `otherwise`
+    is the verdict where the inequality does not hold: "not shown" where that puts a datum in doubt, not the design.
     """
 
     form: Literal["inequality"] = "inequality"
@@ -162,6 +166,7 @@ class InequalityLine(Identity):
     headroom_of: str = ""
     above: str = ""
     governs: bool = True
+    otherwise: Verdict = "not met"
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -182,7 +187,8 @@ class RuleLine(Identity):
 class DerivationLine(Identity):
     """One line of a derivation: `left` = `right` in the grammar, a premise or proven by algebra.
 
-    `reason` says how it follows; for a proven line `proof` says what was simplified to zero; `formula` names the
+    `reason` says how it follows; for a proven line `reached` is the expression that the algebra arrives at, in the
+    grammar, and `proof` says what was simplified to zero; `formula` names the
     formula whose written form this line is, if any.
     """
 
@@ -193,6 +199,7 @@ class DerivationLine(Identity):
     standing: Literal["premise", "proven"]
     reason: str
     proof: str = ""
+    reached: str = ""
     formula: str = ""
 
 

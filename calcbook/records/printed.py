@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from decimal import ROUND_CEILING, ROUND_FLOOR, Decimal
+
 from calcbook.records.quantity import Quantity
 from calcbook.records.units import UNITS
 
@@ -51,6 +53,17 @@ def print_calculated(quantity: Quantity, figures: int | None = None) -> str:
     if quantity.kind == "count" and quantity.number == round(quantity.number):
         return print_given(quantity)
     return with_unit(print_number(quantity.number, figures), quantity.unit)
+
+
+def print_rounded(quantity: Quantity, *, up: bool) -> str:
+    """A limit with 4 significant figures, rounded up or down so that the printed number is on the safe side."""
+    number = Decimal(repr(quantity.number))
+    step = Decimal(1).scaleb(number.adjusted() - 3)
+    rounded = (number / step).to_integral_value(ROUND_CEILING if up else ROUND_FLOOR) * step
+    nearest = (number / step).to_integral_value() * step
+    if abs(nearest - number) <= abs(number) * Decimal("1e-11"):
+        rounded = nearest  # a limit that is a round number, but for the last bits of its search
+    return print_calculated(Quantity(float(rounded), quantity.unit, quantity.kind), 4)
 
 
 def print_given(quantity: Quantity) -> str:

@@ -32,7 +32,7 @@ def read_number(text: str) -> float:
         raise QuantityFault(f"a number of {len(stripped)} characters; allowed are {_LONGEST_NUMBER}")
     if re.fullmatch(r"[+-]?\d+,\d+", stripped, re.ASCII):
         thousands = (
-            f' or "{stripped.replace(",", "")}"' if re.fullmatch(r"[+-]?\d{1,3},\d{3}", stripped, re.ASCII) else ""
+            f' or "{stripped.replace(",", "")}"' if re.fullmatch(r"[+-]?[1-9]\d{0,2},\d{3}", stripped, re.ASCII) else ""
         )
         raise QuantityFault(f'"{stripped}" has a decimal comma; write "{stripped.replace(",", ".")}"{thousands}')
     if not _NUMBER.fullmatch(stripped):
@@ -69,7 +69,7 @@ def check_unit(unit: str, kind: str) -> str:
     if unit in AMBIGUOUS:
         raise QuantityFault(f'"{unit}" names two units; write {_or_list(AMBIGUOUS[unit])}')
     if unit not in UNITS:
-        hint = nearest(unit, allowed) if len(allowed) > 1 else f'allowed: "{allowed[0]}"'
+        hint = nearest(unit, allowed) if len(allowed) > 1 else f"allowed: {_or_list(allowed)}"
         raise QuantityFault(f'"{unit}" is not a unit calcbook knows; {hint}')
     if unit not in allowed:
         found = kind_in_words(UNITS[unit].kinds[0])

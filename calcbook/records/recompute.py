@@ -51,14 +51,12 @@ def _tree(written: str) -> Node:
 def recompute(lines: Iterable[Line], changes: Mapping[str, Quantity | str], look_up: LookUp) -> Recomputed:
     """Work out the lines of one sheet, in order, with some data changed.
 
-    Parameters: `lines` of a trace; `changes` by label of a datum, choice, brought-forward or table line; `look_up`
-    for table values whose keys moved or not. Adopted values stay as adopted. Raises EvaluationFault for a change of
-    something else, for a value outside its range and where a step has no finite value, LookUpFault where a table
-    does not reach.
+    Parameters: `lines` of a trace; `changes` by label of a line whose value is given (see `is_given`); `look_up` for
+    table values whose keys moved or not. Raises EvaluationFault for a change of something else, for a value outside
+    its range and where a step has no finite value, LookUpFault where a table does not reach.
     """
     lines = tuple(lines)
-    sorts = DatumLine | ChoiceLine | BroughtForwardLine | TableLine
-    changeable = [line.label for line in lines if isinstance(line, sorts)]
+    changeable = [line.label for line in lines if is_given(line)]
     for label in changes:
         if label not in changeable:
             raise EvaluationFault(label, f"not a line that can be changed; {nearest(label, changeable)}")
@@ -81,15 +79,22 @@ def _recompute_line(line: Line, changes: Mapping[str, Quantity | str], look_up: 
             else:
                 done.numbers[label] = coherent_number(look_up(line.table, _arguments(line, done)))
         case StepLine():
-            done.numbers[label] = line.si if line.adopted else _step(line, done)
+            done.numbers[label] = _changed(line.name, label, changes, line.si) if line.adopted else _step(line, done)
         case InequalityLine():
             above = done.numbers[line.above] if line.above else 0.0
             utilisation, holds = judge(line.operator, done.numbers[line.left], done.numbers[line.right], above)
             done.utilisations[label] = utilisation
-            done.verdicts[label] = "met" if holds else "not met"
+            done.verdicts[label] = "met" if holds else line.otherwise
         case RuleLine():
             found = done.words.get(line.rests_on, line.found)
             done.verdicts[label] = judge_rule(found, line.allowed)
+
+
+def is_given(line: Line) -> bool:
+    """Whether a line's value is given and not worked out: what recomputation may change."""
+    if isinstance(line, StepLine):
+        return line.adopted is not None
+    return isinstance(line, DatumLine | ChoiceLine | BroughtForwardLine | TableLine)
 
 
 def judge(operator: str, left: float, right: float, above: float = 0.0) -> tuple[float, bool]:

@@ -94,7 +94,9 @@ def execute_sheet(plan: SheetPlan, project_folder: Path, engine: EngineName = "w
     try:
         templates = [find_template(name, project_folder) for name in plan.templates]
         check_parameters(templates, plan.parameters)
-        notebook, failed = _execute(assemble(plan, templates), _parameters(plan), engine)
+        assembled, parameters = assemble(plan, templates), _parameters(plan)
+        with _machine_faults():
+            notebook, failed = _execute(assembled, parameters, engine)
         workbook = clean(notebook)
         return _result(plan, workbook, failed)
     except WorkspaceFault:
@@ -132,6 +134,16 @@ def _marked_dead(notebook: NotebookNode, detail: str) -> NotebookNode:
     started[-1].outputs = [from_dict(process_ended(detail))]
     started[-1].execution_count = None
     return notebook
+
+
+@contextmanager
+def _machine_faults() -> Iterator[None]:
+    """Report what the machine refuses, such as a full disk; what a cell raises is in the notebook, and not met here."""
+    try:
+        yield
+    except OSError as error:
+        place = error.filename or "the folder for temporary files"
+        raise WorkspaceFault(f"a sheet cannot be executed; {place}: {error.strerror or error}") from error
 
 
 @contextmanager

@@ -13,7 +13,7 @@ from typing import Any
 import nbformat
 
 import calcbook
-from calcbook.errors import TemplateFault, nearest
+from calcbook.errors import TemplateFault, WorkspaceFault, nearest
 from calcbook.records.notation import names_of_parameter
 from calcbook.run.cells import CONCLUSION, PARAMETERS, SETUP, Cell, tags_of, text_of
 from calcbook.run.parameters import GIVEN, Parameter, read_parameters
@@ -56,7 +56,10 @@ def folders(project_folder: Path | None = None) -> tuple[Path, ...]:
 
 def template_names(project_folder: Path | None = None) -> tuple[str, ...]:
     """The names of all templates that can be found, in alphabetical order."""
-    found = {path.stem for folder in folders(project_folder) for path in folder.glob("*.ipynb")}
+    try:
+        found = {path.stem for folder in folders(project_folder) for path in folder.glob("*.ipynb")}
+    except OSError as error:
+        raise WorkspaceFault(f"{error.filename}: cannot be read ({error.strerror})") from None
     return tuple(sorted(found))
 
 
@@ -66,7 +69,10 @@ def find_template(name: str, project_folder: Path | None = None) -> Template:
     if name not in names:
         raise TemplateFault(name, f"there is no such template; {nearest(name, names)}")
     paths = (folder / f"{name}.ipynb" for folder in folders(project_folder))
-    return read_template(next(path for path in paths if path.is_file()))
+    try:
+        return read_template(next(path for path in paths if path.exists() or path.is_symlink()))
+    except OSError as error:
+        raise TemplateFault(name, f"{error.filename} cannot be read ({error.strerror})") from None
 
 
 def read_template(path: Path) -> Template:

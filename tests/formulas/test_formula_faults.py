@@ -36,10 +36,10 @@ def test_no_symbol_takes_another_kind(formula: Formula) -> None:
 
 
 def test_line_to_line_voltage_is_not_taken_for_line_to_neutral() -> None:
-    inputs = three_phase.NEUTRAL_CURRENT_OF_MOTOR.example_inputs()
+    inputs = three_phase.LINE_TO_NEUTRAL_CURRENT_OF_MOTOR.example_inputs()
     inputs["U_rN"] = Quantity(400, "V", "line_to_line_voltage")
     with pytest.raises(DimensionFault, match="U_rN needs line-to-neutral voltage, got line-to-line voltage"):
-        three_phase.NEUTRAL_CURRENT_OF_MOTOR.evaluate(inputs)
+        three_phase.LINE_TO_NEUTRAL_CURRENT_OF_MOTOR.evaluate(inputs)
 
 
 @pytest.mark.parametrize(

@@ -26,6 +26,7 @@ ambient_air = "35 degC"
 drop_origin = "MB"
 supply_is = "public"
 [basis.editions]
+"IEC 60364-4-43" = "2008"
 "IEC 60364-5-52" = "2009"
 [boards.MB]
 """

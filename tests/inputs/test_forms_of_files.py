@@ -40,6 +40,13 @@ def test_separator_byte_order_mark_and_line_ends_make_no_difference(tmp_path: Pa
     assert read_project(tmp_path) == wanted
 
 
+def test_a_comment_that_a_spreadsheet_put_in_quotes(tmp_path: Path) -> None:
+    wanted = read(tmp_path)
+    comment = '"# One circuit a row; units in the heads"' + "," * 20 + "\n"
+    assert with_table(tmp_path, (comment + as_csv(CIRCUIT)).encode()) == wanted
+    assert with_table(tmp_path, (comment + as_csv(CIRCUIT, separator=";")).encode()) == wanted
+
+
 def test_declared_decimal_commas_make_no_difference(tmp_path: Path) -> None:
     wanted = read(tmp_path, circuit(shaft_power="45.5 kW", ambient="35.5 degC"))
     row = circuit(shaft_power="45,5 kW", power_factor="0,86", efficiency="0,94", ambient="35,5 degC")

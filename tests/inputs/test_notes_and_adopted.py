@@ -96,8 +96,9 @@ def test_rated_voltage_is_not_filled_beside_a_nameplate_current(tmp_path: Path) 
 
 @pytest.mark.parametrize(("phases", "kind"), [("L1L2L3", "line_to_line_voltage"), ("L3N", "line_to_neutral_voltage")])
 def test_kind_of_a_rated_voltage_follows_the_phases(tmp_path: Path, phases: str, kind: str) -> None:
-    project = read(tmp_path, circuit(phases=phases, rated_voltage="230 V"))
-    assert project.circuits[0].data["rated_voltage"].quantity == Quantity(230.0, "V", kind)
+    rated = 400.0 if phases == "L1L2L3" else 230.0
+    project = read(tmp_path, circuit(phases=phases, rated_voltage=f"{rated:g} V"))
+    assert project.circuits[0].data["rated_voltage"].quantity == Quantity(rated, "V", kind)
 
 
 @pytest.mark.parametrize(
@@ -131,11 +132,11 @@ def test_a_note_on_a_faulty_key_is_not_a_second_fault(tmp_path: Path) -> None:
 
 
 def test_adopted_values(tmp_path: Path) -> None:
-    rows = 'C-1,I_B,82 A,"Letter, item 4",AM,2026-02-26\nC-1,C_g,0.7,Measured,AM,2026-02-26\n'
+    rows = 'C-1,I_B,82 A,"Letter, item 4",AM,2026-02-26\nC-1,C_a_f,0.7,Measured,AM,2026-02-26\n'
     project = read(tmp_path, adopted=ADOPTED_HEADS + rows)
     assert project.circuits[0].adopted == (
         Adopted("I_B", Quantity(82.0, "A", "line_current"), "Letter, item 4", "AM", "2026-02-26"),
-        Adopted("C_g", Quantity(0.7, "1", "ratio"), "Measured", "AM", "2026-02-26"),
+        Adopted("C_a_f", Quantity(0.7, "1", "ratio"), "Measured", "AM", "2026-02-26"),
     )
 
 
@@ -149,7 +150,11 @@ def test_adopted_values(tmp_path: Path) -> None:
             'row 2, value: "V" is a unit of line-to-line voltage; line current takes "mA", "A" or "kA"',
         ),
         ("C-1,I_B,82,r,AM,2026-02-26", 'row 2, value: "82" has no unit; line current takes "mA", "A" or "kA"'),
-        ("C-1,C_g,1.2,r,AM,2026-02-26", "row 2, value: C_g is 1.2; allowed is above 0 to 1"),
+        ("C-1,C_a_f,0,r,AM,2026-02-26", "row 2, value: C_a_f is 0; allowed is more than 0"),
+        (
+            "C-1,C_g,0.5,r,AM,2026-02-26",
+            'row 2, line: "C_g" is not calculated; no value is adopted for it, change it where it is given',
+        ),
         ("C-1,I_B,82 A,,AM,2026-02-26", "row 2, reason: is empty; it is needed in every row"),
         ("C-1,I_B,82 A,r,,2026-02-26", "row 2, by: is empty; it is needed in every row"),
         ("C-1,I_B,82 A,r,AM,", "row 2, date: is empty; it is needed in every row"),

@@ -37,8 +37,26 @@ WRONG = [
         '[basis], practice: "bs" is not allowed; allowed: iec, nec',
     ),
     (
-        changed('[basis.editions]\n"IEC 60364-5-52" = "2009"', ""),
+        changed('[basis.editions]\n"IEC 60364-4-43" = "2008"\n"IEC 60364-5-52" = "2009"', ""),
         '[basis.editions]: is missing; it names the edition of each standard: "IEC 60364-5-52" = "2009"',
+    ),
+    (
+        changed('"IEC 60364-4-43" = "2008"\n', ""),
+        '[basis.editions]: "IEC 60364-4-43" is missing; sheets cite it with its edition',
+    ),
+    (
+        changed('"50 Hz"', '"400 Hz"'),
+        '[basis], frequency: "400 Hz" is not covered yet, and leaving it out would be unsafe: '
+        "the tables are for 50 and 60 Hz",
+    ),
+    (
+        changed("[boards.MB]", "[boards.MB]\nderating = 0.8"),
+        "[boards.MB], derating: the derating of devices in a warm enclosure is not covered yet, and leaving it out "
+        "would be unsafe",
+    ),
+    (
+        changed("[boards.MB]", '[boards.MB]\nambient = "55 degC"'),
+        "[boards.MB], ambient: is not taken over by circuits yet; state ambient in each circuit, or ambient_air",
     ),
     (
         changed('= "2009"', "= 2009"),
@@ -132,13 +150,49 @@ def test_other_faults_are_faults_too(tmp_path: Path, toml: str) -> None:
     ("toml", "place"),
     [
         ("[project\n", "line 1, column 9"),
-        (TOML + "x = \n", "line 16, column 5"),
-        (TOML + "[boards.MB]\n", "line 16, column 11"),
+        (TOML + "x = \n", "line 17, column 5"),
+        (TOML + "[boards.MB]\n", "line 17, column 11"),
         ('a = """', "end of document"),
     ],
 )
 def test_bad_toml_names_the_line(tmp_path: Path, toml: str, place: str) -> None:
     assert faults_of(tmp_path, toml=toml)[0].startswith(f"inputs.toml, {place}: is not valid TOML: ")
+
+
+@pytest.mark.parametrize(
+    ("toml", "message"),
+    [
+        ("[basis\n", "line 1, column 7: is not valid TOML: Expected ']' at the end of a table declaration"),
+        ("a = 1\na = 2\n", "line 2, column 6: is not valid TOML: a key stands twice in its table"),
+    ],
+)
+def test_bad_toml_says_what_is_wrong(tmp_path: Path, toml: str, message: str) -> None:
+    assert faults_of(tmp_path, toml=toml)[0] == f"inputs.toml, {message}"
+
+
+@pytest.mark.parametrize(
+    ("old", "new", "message"),
+    [
+        ('"50 Hz"', "inf", '[basis], frequency: "inf" is not a number'),
+        (
+            'title = "Tern',
+            'date = 2026-03-02T10:00:00\ntitle = "Tern',
+            '[project], date: "2026-03-02 10:00:00" is not a date; write year-month-day, such as 2026-03-31',
+        ),
+        (
+            "[boards.MB]",
+            '[boards.MB]\n[files."circuits.csv"]\ndecimal = ";"',
+            '[files."circuits.csv"], decimal: ";" is not allowed; allowed: ".", ","',
+        ),
+        (
+            "[boards.MB]",
+            "[[boards]]",
+            "[boards]: is not a table of tables; each is written [boards.NAME], its keys below",
+        ),
+    ],
+)
+def test_values_of_toml_that_are_no_text(tmp_path: Path, old: str, new: str, message: str) -> None:
+    assert f"inputs.toml, {message}" in faults_of(tmp_path, toml=changed(old, new))
 
 
 def test_toml_nested_too_deeply(tmp_path: Path) -> None:
@@ -242,3 +296,22 @@ def test_a_file_far_too_large(tmp_path: Path) -> None:
 
 def test_devices_are_listed_as_unused(tmp_path: Path) -> None:
     assert read(tmp_path, devices="type\n").unused == ("devices.csv",)
+
+
+@pytest.mark.parametrize("name", ["Notes.csv", "Adopted.CSV"])
+def test_a_file_whose_name_has_capitals_is_not_passed_over(tmp_path: Path, name: str) -> None:
+    folder = write(tmp_path)
+    (folder / name).write_text("", "utf-8")
+    assert f"{name}: is not read; its name is written {name.lower()}, in small letters" in faults_in(folder)
+
+
+def test_a_link_to_nothing_is_not_passed_over(tmp_path: Path) -> None:
+    folder = write(tmp_path)
+    (folder / "notes.csv").symlink_to("nowhere.csv")
+    assert faults_in(folder)[0].startswith("notes.csv: is missing; ")
+
+
+def test_a_folder_that_cannot_be_looked_at(tmp_path: Path) -> None:
+    wrong = faults_in(tmp_path / ("x" * 5000))
+    assert len(wrong) == 1
+    assert wrong[0].endswith("...: cannot be read (File name too long)")

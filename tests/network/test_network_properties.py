@@ -1,4 +1,4 @@
-"""Small random networks against complex arithmetic of our own: Kirchhoff, the neutral, voltages, and what length does."""
+"""Small random networks against complex arithmetic of our own: Kirchhoff, neutral, voltages, and what length does."""
 
 from __future__ import annotations
 
@@ -50,7 +50,7 @@ def expected_currents(loads: list[dict[str, str]], diversity: float) -> dict[str
     return found
 
 
-@settings(max_examples=12)
+@settings(max_examples=25)
 @given(networks)
 def test_currents_of_a_board_are_the_sum_of_its_loads(
     folder: Path, network: tuple[list[dict[str, str]], float]
@@ -78,7 +78,7 @@ def _third(one: dict[str, str]) -> float:
     return math.prod(float(one[name]) for name in numbers) / 100
 
 
-@settings(max_examples=12)
+@settings(max_examples=25)
 @given(networks)
 def test_voltages_of_a_board_follow_from_the_node_equations(
     folder: Path, network: tuple[list[dict[str, str]], float]
@@ -106,7 +106,7 @@ def lengthened(folder: Path, network: tuple[list[dict[str, str]], float], metres
     return run_network(project)["F-1"]
 
 
-@settings(max_examples=8)
+@settings(max_examples=12)
 @given(networks, st.integers(1, 200))
 def test_more_length_never_lessens_the_drop_of_the_worst_line(
     folder: Path, network: tuple[list[dict[str, str]], float], metres: int
@@ -115,7 +115,7 @@ def test_more_length_never_lessens_the_drop_of_the_worst_line(
     assert si(lengthened(folder, network, metres), "du_tot") >= si(short, "du_tot") - 1e-12
 
 
-@settings(max_examples=6)
+@settings(max_examples=10)
 @given(networks, st.integers(1, 200))
 def test_more_length_never_raises_a_voltage_of_a_balanced_board(
     folder: Path, network: tuple[list[dict[str, str]], float], metres: int

@@ -71,7 +71,9 @@ def test_a_character_without_a_glyph_prints_as_its_code_point(text: str, shown: 
 def test_long_words_may_break() -> None:
     assert on_paper("A" * 30) == "\u200b".join(["A" * 12, "A" * 12, "A" * 6])
     assert on_paper("A" * 18) == "A" * 18
-    assert on_paper("neutral_current_of_load") == "neutral_\u200bcurrent_\u200bof_\u200bload"
+    assert (
+        on_paper("line_to_neutral_current_of_load") == "line_\u200bto_\u200bneutral_\u200bcurrent_\u200bof_\u200bload"
+    )
 
 
 def test_literals() -> None:

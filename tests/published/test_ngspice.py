@@ -138,7 +138,7 @@ def test_line_voltage_of_star_is_root_three_times_its_phase_voltage(tmp_path: Pa
     line = ours(three_phase.STAR_LINE_VOLTAGE, U_ph=abs(found["v(b1)"]))
     assert line == pytest.approx(abs(found["v(b1)"] - found["v(b2)"]), rel=EXACT)
     phase = ours(
-        three_phase.NEUTRAL_CURRENT_OF_ACTIVE_POWER,
+        three_phase.LINE_TO_NEUTRAL_CURRENT_OF_ACTIVE_POWER,
         P_1=power(found).real / 3e3, U_rN=abs(found["v(b1)"]), cos_phi=POWER_FACTOR,
     )  # fmt: skip
     assert phase == pytest.approx(abs(found["i(vp1)"]), rel=EXACT)

@@ -5,6 +5,7 @@ from __future__ import annotations
 import os
 import subprocess
 import sys
+import tempfile
 from pathlib import Path
 from types import MappingProxyType
 
@@ -12,6 +13,7 @@ import nbformat
 import pytest
 from small_templates import CABLE_PARAMETERS, code, plan, save, save_load_and_cable, save_with, template
 
+from calcbook.errors import WorkspaceFault
 from calcbook.records.project import Plan, SheetPlan
 from calcbook.records.result import Failure, SheetResult
 from calcbook.run.execute import EngineName, execute_all, execute_sheet
@@ -167,3 +169,12 @@ def test_nothing_is_said_and_no_file_is_left(
     assert not any(name.startswith("calcbook-") for name in left)
     if engine == "warm":
         assert left <= {".cache"}
+
+
+def test_a_machine_without_room_for_temporary_files(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
+    save_load_and_cable(tmp_path)
+    monkeypatch.setattr(tempfile, "tempdir", str(tmp_path / "nowhere"))
+    with pytest.raises(WorkspaceFault) as caught:
+        execute_sheet(plan("small-load", "small-cable"), tmp_path)
+    assert str(caught.value).startswith(f"a sheet cannot be executed; {tmp_path}/nowhere/calcbook-")
+    assert str(caught.value).endswith(": No such file or directory")

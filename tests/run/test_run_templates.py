@@ -142,3 +142,18 @@ def test_a_parameter_that_an_earlier_template_works_out_cannot_be_set(tmp_path: 
         'template works-out, small-cable: parameter "design_current" is worked out by template works-out of this '
         "sheet, and cannot be set"
     )
+
+
+def test_a_template_that_cannot_be_looked_at_is_refused(tmp_path: Path) -> None:
+    """It is never replaced in silence by the one of the same name that comes with calcbook."""
+    save_load_and_cable(tmp_path)
+    path = tmp_path / "templates" / "small-cable.ipynb"
+    path.unlink()
+    path.symlink_to(path.name)
+    assert "cannot be read" in fault(tmp_path, "small-cable")
+    path.unlink()
+    path.symlink_to("nowhere.ipynb")
+    assert "cannot be read" in fault(tmp_path, "small-cable")
+    path.unlink()
+    path.mkdir()
+    assert "cannot be read as a notebook" in fault(tmp_path, "small-cable")

@@ -18,6 +18,7 @@ MOTOR: dict[str, str] = {
     "power_factor": "0.86",
     "rated_voltage": "400 V",
     "overload_setting": "81 A",
+    "rating": "160 A",
     "insulation": "XLPE90",
     "ambient": "40 degC",
     "size": "25 mm2",

@@ -10,6 +10,7 @@ from sheet_samples import motor_circuit, quiet_sheet
 from calcbook.errors import EvaluationFault, LookUpFault
 from calcbook.records.headroom import headroom
 from calcbook.records.line import ConclusionLine, InequalityLine, Line, Valued
+from calcbook.records.printed import print_rounded
 from calcbook.records.quantity import Quantity, read_quantity
 from calcbook.records.recompute import recompute
 from calcbook.sheet import look_up
@@ -102,6 +103,13 @@ def test_a_criterion_not_met_has_the_value_at_which_it_would_be(monkeypatch: pyt
     room = headroom(lines, criterion, look_up)
     assert room is not None
     assert room.limit_text == "45.17\N{NO-BREAK SPACE}kW"
+
+
+@given(st.floats(0.001, 99999), st.booleans())
+def test_limits_are_printed_on_the_safe_side(number: float, up: bool) -> None:
+    printed = float(print_rounded(Quantity(number, "A", "line_current"), up=up).split("\N{NO-BREAK SPACE}")[0])
+    assert printed >= number * (1 - 1e-10) if up else printed <= number * (1 + 1e-10)
+    assert printed == pytest.approx(number, rel=1.1e-3)
 
 
 def test_criterion_that_holds_over_the_whole_range(monkeypatch: pytest.MonkeyPatch) -> None:

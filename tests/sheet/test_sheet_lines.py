@@ -129,12 +129,43 @@ def test_adopted_value_stands_beside_the_calculated_one(monkeypatch: pytest.Monk
     conclusion = sheet.lines[-1]
     assert isinstance(conclusion, ConclusionLine)
     assert any("adopted in place of 80.7\N{NO-BREAK SPACE}A" in caution for caution in conclusion.cautions)
-    assert conclusion.headrooms[0].remark == "an adopted value stands between; it does not move"
+    room = conclusion.headrooms[0]
+    assert (room.datum, room.limit_text) == ("I_B", "81.00\N{NO-BREAK SPACE}A")
+    assert room.remark.startswith("must come to this limit for the criterion to be met; the adopted value")
+    assert not any("less safe" in item for item in conclusion.open_items)
+
+
+def test_adopted_value_less_safe_than_calculated_is_an_open_item(monkeypatch: pytest.MonkeyPatch) -> None:
+    adopted = {"I_B": {"value": "70 A", "reason": "measured", "by": "A.B.", "date": "2026-05-04"}}
+    conclusion = motor_circuit(quiet_sheet(monkeypatch, {"adopted": adopted})).lines[-1]
+    assert isinstance(conclusion, ConclusionLine)
+    assert (
+        "design current 70\N{NO-BREAK SPACE}A adopted: less safe than the calculated 80.7\N{NO-BREAK SPACE}A "
+        "for design current" in conclusion.open_items
+    )
+
+
+def test_adopted_value_of_a_table_line_is_refused(monkeypatch: pytest.MonkeyPatch) -> None:
+    adopted = {"C_g": {"value": "0.5", "reason": "r", "by": "A.B.", "date": "2026-05-04"}}
+    with pytest.raises(SheetFault, match=r"C_g: adopted\.csv has a value for it, but this sheet has no such step"):
+        motor_circuit(quiet_sheet(monkeypatch, {"adopted": adopted}))
+
+
+def test_criterion_that_puts_a_datum_in_doubt_is_not_shown(monkeypatch: pytest.MonkeyPatch) -> None:
+    sheet = quiet_sheet(monkeypatch, overload_setting="200 A")
+    I_r, I_B = sheet.datum("overload_setting"), sheet.datum("rating")
+    sheet.criterion("doubt", I_r <= I_B, cite="common practice", otherwise="not shown")
+    sheet.conclude()
+    conclusion = sheet.lines[-1]
+    assert isinstance(conclusion, ConclusionLine)
+    assert conclusion.verdict == "not shown"
 
 
 def test_adopted_value_of_no_step_is_refused(monkeypatch: pytest.MonkeyPatch) -> None:
     adopted = {"I_L": {"value": "85 A", "reason": "r", "by": "A.B.", "date": "2026-05-04"}}
-    with pytest.raises(SheetFault, match="an adopted value, but this sheet has no such step; did you mean"):
+    with pytest.raises(
+        SheetFault, match=r"adopted\.csv has a value for it, but this sheet has no such step; did you mean"
+    ):
         motor_circuit(quiet_sheet(monkeypatch, {"adopted": adopted}))
 
 
