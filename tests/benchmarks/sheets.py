@@ -33,8 +33,9 @@ EXAMPLE = Path(__file__).resolve().parents[2] / "examples" / "tern_quay"
 
 
 def sheet_plans(count: int) -> list[SheetPlan]:
-    """The example's circuits, repeated under other numbers."""
-    circuits = [plan for plan in make_plan(read_project(EXAMPLE)).sheets if not plan.number.startswith("D-")]
+    """The example's final circuits, repeated under other numbers; alone they take the board's voltage as nominal."""
+    plans_of_example = make_plan(read_project(EXAMPLE)).sheets
+    circuits = [replace(plan, rests_on={}) for plan in plans_of_example if plan.templates[0] == "three-phase-power"]
     plans = []
     for index in range(count):
         plan = circuits[index % len(circuits)]

@@ -24,7 +24,7 @@ DERIVED = [formula for formula in formulas().values() if formula.derivation]
 
 @pytest.mark.parametrize(("derivation", "stage"), PROVEN)
 def test_a_stage_is_proven(derivation: Derivation, stage: Stage) -> None:
-    assert derivation.prove(stage) == "difference from the derived form simplified to 0"
+    assert derivation.prove(stage) == "its difference from what the algebra reaches simplifies to 0"
 
 
 @pytest.mark.parametrize(("derivation", "stage"), PROVEN)

@@ -178,10 +178,6 @@ NOT_COVERED = [
     ({"starter": "converter"}, f"row 2, starter: a converter {UNSAFE}: its input current and its harmonics"),
     ({"insulation_covered": "0.1 m"}, f"row 2, insulation_covered: thermal insulation around a cable {UNSAFE}"),
     (
-        {**NEUTRAL, "kind": "charger", "starter": ""},
-        "row 2, third_harmonic: is empty; a circuit on L1L2L3N needs it, for it loads the neutral (0 where none)",
-    ),
-    (
         {"current": "20 A", "shaft_power": "", "efficiency": "", "rated_current": "20 A", "rated_voltage": ""},
         'row 2, rated_current: current "20 A" and rated_current "20 A": a load given by its current has no second one; '
         "write the one that counts",
@@ -198,10 +194,6 @@ NOT_COVERED = [
         {"device": "gG", "rating": "35 A", "setting_Ir": "", "overload_device": "", "overload_setting": ""},
         'row 2, rating [A]: "35 A" is no rated current of a gG fuse-link; allowed: 2, 4, 6, 8, 10, 12, 16, 20, 25, 32, '
         "40, 50, 63, 80, 100, 125, 160, 200, 250, 315, 400, 500, 630, 800, 1000, 1250 A",
-    ),
-    (
-        {**NEUTRAL, "third_harmonic": "0 %", "neutral_size": "16 mm2"},
-        f"row 2, neutral_size: a neutral smaller than the line {UNSAFE}",
     ),
     ({"kind": "capacitor", "starter": ""}, f"row 2, kind: the overcurrent of a capacitor {UNSAFE}"),
 ]

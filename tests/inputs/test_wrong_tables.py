@@ -43,7 +43,7 @@ def test_heads(tmp_path: Path, old: str, new: str, message: str) -> None:
 
 def test_unknown_column_offers_the_nearest(tmp_path: Path) -> None:
     wrong = faults_of(tmp_path, {**CIRCUIT, "lenght [m]": "20"})
-    assert wrong == ['circuits.csv, row 1, column 22: "lenght" is not known here; did you mean "length"?']
+    assert wrong == ['circuits.csv, row 1, column 24: "lenght" is not known here; did you mean "length"?']
 
 
 def test_missing_column_is_named_once(tmp_path: Path) -> None:
@@ -54,9 +54,9 @@ def test_missing_column_is_named_once(tmp_path: Path) -> None:
 def test_too_many_cells(tmp_path: Path) -> None:
     folder = write(tmp_path)
     with (folder / "circuits.csv").open("a") as file:
-        file.write("C-2" + ",1" * 22 + "\n")
+        file.write("C-2" + ",1" * 24 + "\n")
     assert faults_in(folder) == [
-        'circuits.csv, row 3: 23 cells under 21 heads, the last is "1"; a comma or semicolon within a number or a '
+        'circuits.csv, row 3: 25 cells under 23 heads, the last is "1"; a comma or semicolon within a number or a '
         "text splits a cell, unless the cell stands in quotation marks"
     ]
 
@@ -66,7 +66,7 @@ def test_a_comma_that_pushes_empty_cells_over_the_end(tmp_path: Path) -> None:
     text = as_csv(circuit(description="Hoist; travelling", starter=None, to="")).replace('"', "")
     folder = write(tmp_path)
     (folder / "circuits.csv").write_text(text.replace("Hoist;", "Hoist,"), "utf-8")
-    assert faults_in(folder)[0].startswith('circuits.csv, row 2: 22 cells under 21 heads, the last is "82"; a comma or')
+    assert faults_in(folder)[0].startswith('circuits.csv, row 2: 24 cells under 23 heads, the last is "82"; a comma or')
     assert len(faults_in(folder)) == 1
 
 

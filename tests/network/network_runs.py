@@ -111,6 +111,7 @@ ambient_air = "35 degC"
 drop_origin = "MB"
 supply_is = "private"
 [basis.editions]
+"IEC 60364-4-43" = "2008"
 "IEC 60364-5-52" = "2009"
 [boards.MB]
 diversity = "0.9"

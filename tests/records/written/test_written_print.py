@@ -134,6 +134,9 @@ def test_a_sum_over_lines_shows_its_terms_and_cuts_a_long_one() -> None:
     many = [f"{number} kW" for number in range(1, 10)]
     assert latex.values(node, {"P_1": "one line only"}) == r"\sum \, \text{one line only}"
     assert latex.values(node, {"P_1": []}) == r"\sum \, \text{}"
+    in_product = latex.values(parse("k_s*sum(P_1)"), {"k_s": "0.8", "P_1": ["1 kW", f"{MINUS}2 kW"]})
+    terms = rf"\text{{1 kW}} + \left( \text{{{MINUS}2 kW}} \right)"
+    assert in_product == rf"\text{{0.8}} \cdot \left( {terms} \right)"
     assert latex.values(node, {"P_1": many}) == r"\text{1 kW} + \text{2 kW} + \dots + \text{9 kW}"
 
 
