@@ -66,21 +66,25 @@ def _conclusions(result: SheetResult) -> list[ConclusionLine]:
     return [line for line in result.trace.lines if isinstance(line, ConclusionLine)]
 
 
+def _name(result: SheetResult) -> str:
+    return f"{result.number}, {result.part}" if result.part else result.number
+
+
 def _row(result: SheetResult) -> tuple[str, str, str, str, str]:
     if result.outcome == "failed":
-        return result.number, result.title, "failed", "", ""
+        return _name(result), result.title, "failed", "", ""
     conclusions = _conclusions(result)
     if not conclusions or not conclusions[0].governing:
-        return result.number, result.title, "", "", ""
+        return _name(result), result.title, "", "", ""
     conclusion = conclusions[0]
     line = next(line for line in result.trace.lines if line.label == conclusion.governing)
     utilisation = line.utilisation_text if isinstance(line, InequalityLine) else ""
-    return result.number, result.title, conclusion.verdict, conclusion.governing, utilisation
+    return _name(result), result.title, conclusion.verdict, conclusion.governing, utilisation
 
 
 def _shortcomings(result: SheetResult) -> list[str]:
     if result.failure:
-        return [f"{result.number}: could not be executed: {result.failure.message}"]
+        return [f"{_name(result)}: could not be executed: {result.failure.message}"]
     found = []
     for line in result.trace.lines:
         if isinstance(line, InequalityLine) and line.verdict != "met":

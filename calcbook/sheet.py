@@ -13,12 +13,12 @@ from typing import Any
 
 from IPython.display import display
 
-from calcbook.errors import CalcbookError, DimensionFault, SheetFault, nearest
+from calcbook.errors import CalcbookError, SheetFault, nearest
 from calcbook.formulas.formula import Formula, written_out
 from calcbook.formulas.register import DERIVATIONS, formulas
-from calcbook.records.binding import argument, binding, keyed, quantities, symbol_of
+from calcbook.records.binding import argument, binding, check_range, keyed, quantities, symbol_of
 from calcbook.records.conclude import conclusion
-from calcbook.records.dimension import coherent_number, in_unit
+from calcbook.records.dimension import coherent_number
 from calcbook.records.display import bundle
 from calcbook.records.given import Given, flat_parameters
 from calcbook.records.line import (
@@ -36,7 +36,7 @@ from calcbook.records.line import (
     Valued,
     Verdict,
 )
-from calcbook.records.notation import Name, named, names_of_parameter, out_of_range
+from calcbook.records.notation import Name, named, names_of_parameter
 from calcbook.records.printed import print_calculated, print_given, print_number, tell_apart
 from calcbook.records.quantity import Quantity, read_quantity
 from calcbook.records.recompute import judge, judge_rule
@@ -91,7 +91,7 @@ class Sheet:
         text = self._text_of(parameter, entry.name)
         try:
             quantity = read_quantity(text, entry.kind)
-            _check_range(entry, quantity)
+            check_range(entry, quantity)
         except CalcbookError as error:
             raise self._fault(entry.name, f"{parameter}: {error}") from error
         return self._valued(
@@ -107,10 +107,7 @@ class Sheet:
         )
 
     def brought_forward(self, parameter: str, symbol: str = "", key: str = "") -> Value:
-        """A value that another sheet worked out; alone, or where nothing was brought, the datum of that parameter.
-
-        One that an earlier template of this workbook brought is taken.
-        """
+        """A value that another sheet worked out, taken where an earlier template brought it; else the datum."""
         entry = self._entry_of(parameter, symbol)
         for line in self.lines:
             if line.label == keyed(entry.name, key) and line.template != self.template and isinstance(line, Valued):
@@ -232,7 +229,7 @@ class Sheet:
             value, second = formula.evaluate({symbol: quantities(bound) for symbol, bound in bindings.items()})
             adopted = self.given.adopted_value(entry, label)
             final = adopted.value if adopted else value
-            _check_range(entry, final)
+            check_range(entry, final)
         except SheetFault:
             raise
         except CalcbookError as error:
@@ -394,9 +391,3 @@ def prime() -> None:
     for formula in formulas().values():
         formula.evaluate(formula.example_inputs())
     tables()
-
-
-def _check_range(entry: Name, quantity: Quantity) -> None:
-    fault = out_of_range(entry, in_unit(coherent_number(quantity), entry.unit, entry.kind))
-    if fault:
-        raise DimensionFault(fault)

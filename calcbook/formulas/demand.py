@@ -105,7 +105,7 @@ def _sum(name: str, what: str, result: str, part: str) -> Formula:
         result=result,
         written=f"k_s*sum({part})",
         valid=_AT_NOMINAL,
-        reference="sum of the circuits, 5-52, 311 of IEC 60364-1 for demand",
+        reference="IEC 60364-1, 311",
         citation="Kirchhoff's current law; IEC 60364-1, 311 (demand and diversity)",
         example=Example({"k_s": "0.8", part: "30 A; 20 A; 50 A"}, "80.0 A"),
     )

@@ -99,9 +99,9 @@ class Layout:
         return self.of(node.body if isinstance(node, Bracket) else node)
 
     def operand(self, node: Node) -> str:
-        """A right-hand operand: a negative value gets brackets."""
+        """A right-hand operand: a negative value and the terms of a sum get brackets."""
         set_ = self.of(node)
-        if isinstance(node, Negative) or self.is_negative_value(node):
+        if isinstance(node, Negative) or self.is_negative_value(node) or self.is_several_terms(node):
             return self.setter.fence("(", set_, ")")
         return set_
 
@@ -112,6 +112,13 @@ class Layout:
         if is_value or is_function or isinstance(node, Call):
             return self.setter.fence("(", self.of(node), ")")
         return self.of(node)
+
+    def is_several_terms(self, node: Node) -> bool:
+        """Whether a sum is set as the values of several lines."""
+        if not (isinstance(node, Call) and node.function == "sum" and self.texts is not None):
+            return False
+        found = (self.texts.get(write(symbol), "") for symbol in symbols_of(node))
+        return any(not isinstance(texts, str) and len(texts) > 1 for texts in found)
 
     def is_negative_value(self, node: Node) -> bool:
         """Whether a symbol stands for a value printed with a minus sign."""
@@ -169,7 +176,7 @@ class Layout:
         terms = []
         for index in shown:
             texts = {**texts_of, **{label: values[index] for label, values in keyed.items()}}
-            terms.append(Layout(setter, texts).of(body))
+            terms.append(Layout(setter, texts).operand(body))
         if count > _MOST_TERMS:
             terms.insert(2, setter.sign("…"))
         return setter.row(_joined(terms, setter.sign("+")))
