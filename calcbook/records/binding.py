@@ -4,7 +4,10 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
+from calcbook.errors import DimensionFault
+from calcbook.records.dimension import coherent_number, in_unit
 from calcbook.records.line import Argument, Binding
+from calcbook.records.notation import Name, out_of_range
 from calcbook.records.quantity import Quantity
 from calcbook.records.value import Choice, Value
 from calcbook.records.written.tree import Symbol
@@ -45,3 +48,10 @@ def binding(label: str, bound: Bound) -> Binding:
     return Binding(
         symbol=label, rests_on=tuple(value.label for value in values), texts=tuple(value.text for value in values)
     )
+
+
+def check_range(entry: Name, quantity: Quantity) -> None:
+    """Raise DimensionFault where a quantity lies outside the range of its name."""
+    fault = out_of_range(entry, in_unit(coherent_number(quantity), entry.unit, entry.kind))
+    if fault:
+        raise DimensionFault(fault)

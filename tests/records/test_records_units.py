@@ -20,7 +20,8 @@ BY_HAND = {
     "var": 1, "kvar": 1e3, "Mvar": 1e6, "VA": 1, "kVA": 1e3, "MVA": 1e6,
     "mV": 1e-3, "V": 1, "kV": 1e3, "mA": 1e-3, "A": 1, "kA": 1e3, "A2s": 1, "kA2s": 1e6,
     "degC": 1, "K": 1, "m": 1, "mm": 1e-3, "km": 1e3, "ohm": 1, "mohm": 1e-3,
-    "ohm/m": 1, "mohm/m": 1e-3, "ohm/km": 1e-3, "K.m/W": 1, "K/W": 1, "1/K": 1, "F": 1, "uF": 1e-6, "H/m": 1, "uH/m": 1e-6,
+    "ohm/m": 1, "mohm/m": 1e-3, "ohm/km": 1e-3, "K.m/W": 1, "K/W": 1, "1/K": 1,
+    "F": 1, "uF": 1e-6, "H/m": 1, "uH/m": 1e-6,
     "m2": 1, "mm2": 1e-6, "ms": 1e-3, "s": 1, "h": 3600, "Hz": 1, "rad/s": 1, "J": 1, "kWh": 3.6e6,
     "rad": 1, "deg": math.pi / 180, "1": 1, "%": 0.01, "1/m": 1, "%/m": 0.01, "1/s": 1, "1/h": 1 / 3600,
 }  # fmt: skip

@@ -53,7 +53,7 @@ def test_the_same_inputs_give_the_same_bytes_under_both_engines(tmp_path: Path) 
 
 def test_given_is_handed_over_as_plain_data(tmp_path: Path) -> None:
     save_with(tmp_path, "shows-given", "given")
-    given = {"pair": (1, 0.1 + 0.2), "text": 'a"b\\c', "none": None, "sheet": "C-1"}
+    given = {"origins": {"pair": (1, 0.1 + 0.2), "text": 'a"b\\c', "none": None}, "sheet": "C-1"}
     sheet = SheetPlan("C-014", "Hoist", ("shows-given",), MappingProxyType({}), MappingProxyType(given))
     workbook = nbformat.reads(execute_sheet(sheet, tmp_path).workbook, as_version=4)
     shown = next(cell for cell in workbook.cells if cell.source == "given").outputs[0].data["text/plain"]
