@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from pathlib import Path
 from typing import Literal
 
@@ -11,11 +11,12 @@ from calcbook.inputs.project import read_project
 from calcbook.plan.sheets import make_plan
 from calcbook.publish.package import publish
 from calcbook.records.files import make_folder
-from calcbook.records.line import InequalityLine, RuleLine
+from calcbook.records.line import DatumLine, InequalityLine, RuleLine
 from calcbook.records.printed_table import PrintedTable
-from calcbook.records.project import Plan, Project
+from calcbook.records.project import Datum, Plan, Project
 from calcbook.records.result import SheetResult
 from calcbook.reference.table import table
+from calcbook.run.choose_size import CHOSEN, SIZE
 from calcbook.run.execute import execute_all
 
 Engine = Literal["warm", "kernel"]
@@ -61,8 +62,24 @@ def run_project(
     out = folder / "sheets"
     make_folder(out)
     results = execute_all(plan, folder, engine, on_done)
+    project = _with_chosen_sizes(project, results)
     publish(project, plan, results, _tables_used(project, results), out)
     return Run(project, results, out)
+
+
+def _with_chosen_sizes(project: Project, results: tuple[SheetResult, ...]) -> Project:
+    """The project with the sizes that the run chose beside the given ones, each with its reason as origin."""
+    chosen = {
+        line.sheet: Datum(line.text, line.value, line.origin)
+        for result in results
+        for line in result.trace.lines
+        if isinstance(line, DatumLine) and line.origin.file == CHOSEN
+    }
+    circuits = (
+        replace(circuit, data={**circuit.data, SIZE: chosen[circuit.tag]}) if circuit.tag in chosen else circuit
+        for circuit in project.circuits
+    )
+    return replace(project, circuits=tuple(circuits))
 
 
 def _tables_used(project: Project, results: tuple[SheetResult, ...]) -> tuple[PrintedTable, ...]:

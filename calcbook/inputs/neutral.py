@@ -21,6 +21,9 @@ def report_neutral(row: Row) -> None:
         return
     _harmonics(row)
     line, neutral = row.number("size", "mm2"), row.number("neutral_size", "mm2")
+    if row.lacks("size") and row.text("neutral_size"):
+        row.fault("neutral_size", "goes with a given size; with the size left to choose, the neutral equals the line")
+        return
     if row.text("cores") == "3.5" and (neutral is None or (line is not None and neutral >= line)):
         if not row.wrong & {"neutral_size", "size"}:
             row.fault("neutral_size", "is needed with 3.5 cores, and smaller than size: the size of the smaller core")

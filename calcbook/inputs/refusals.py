@@ -41,7 +41,6 @@ def _above(column: str, limit: float, unit: str) -> Callable[[Row], bool]:
 
 REFUSALS = (
     Refusal("kind", _says("kind", "capacitor"), f"the overcurrent of a capacitor {UNSAFE}"),
-    Refusal("size", lambda row: row.lacks("size"), "choice of size is not covered yet; give a size"),
     Refusal("starter", _says("starter", "star_delta"), f"star-delta starting {UNSAFE}: six conductors, reclosing peak"),
     Refusal("starter", _says("starter", "converter"), f"a converter {UNSAFE}: its input current and its harmonics"),
     Refusal("insulation_covered", _above("insulation_covered", 0, "m"), f"thermal insulation around a cable {UNSAFE}"),

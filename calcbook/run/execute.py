@@ -25,6 +25,7 @@ from calcbook.records.result import Failure, SheetResult
 from calcbook.records.trace import SCHEMA_VERSION, Trace, canonical_json, trace_of_notebook
 from calcbook.run.assemble import assemble
 from calcbook.run.cells import text_of
+from calcbook.run.choose_size import lacks_size, with_chosen_size
 from calcbook.run.clean import canonical_text, clean
 from calcbook.run.engine import WarmEngine
 from calcbook.run.helper import can_fork
@@ -79,8 +80,10 @@ def _execute_with(
         value = line.value
         brought[parameter] = {"number": value.number, "unit": value.unit, "kind": value.kind, "si": line.si,
                               "text": line.text, "source": line.id}  # fmt: skip
-    given = {**sheet.given, "brought_forward": brought}
-    return execute_sheet(replace(sheet, given=given), project_folder, engine)
+    ready = replace(sheet, given={**sheet.given, "brought_forward": brought})
+    if lacks_size(ready):
+        ready = with_chosen_size(ready, lambda plan: execute_sheet(plan, project_folder, engine))
+    return execute_sheet(ready, project_folder, engine)
 
 
 def execute_sheet(plan: SheetPlan, project_folder: Path, engine: EngineName = "warm") -> SheetResult:
