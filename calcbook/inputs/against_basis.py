@@ -12,7 +12,8 @@ _TOLERANCE = 0.10  # IEC 60038: service voltages lie within 10 % of the nominal 
 
 
 def report_against_basis(row: Row, basis: Mapping[str, Datum]) -> None:
-    """Report a rated voltage that does not go with the system."""
+    """Report a rated voltage that does not go with the system, and a supplement to a limit that is the basis's own."""
+    _report_supplement(row, basis)
     rated, phases = row.number("rated_voltage", "V"), row.text("phases")
     if rated is None or not phases:
         return
@@ -28,3 +29,10 @@ def report_against_basis(row: Row, basis: Mapping[str, Datum]) -> None:
             f'"{row.text("rated_voltage")}" does not go with {basis[key].text} {between} (phases {phases}); '
             f"allowed is {low:g} to {high:g} V",
         )
+
+
+def _report_supplement(row: Row, basis: Mapping[str, Datum]) -> None:
+    limit = f"drop_limits.{row.text('kind')}"
+    if row.text("length_supplement") and limit in basis and not row.text("drop_limit"):
+        found = f'[basis] has {limit} "{basis[limit].text}"'
+        row.fault("length_supplement", f"{found}: the supplement goes with the limits of Table G.52.1 only")

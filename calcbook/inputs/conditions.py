@@ -7,7 +7,8 @@ from collections.abc import Callable
 from calcbook.inputs.rows import Row
 
 LOADS = ("shaft_power", "active_power", "apparent_power", "current")
-_OF_LOADS = (*LOADS, "power_factor", "efficiency", "rated_current", "rated_voltage", "third_harmonic", "starter")
+_NAMEPLATE = ("power_factor", "efficiency", "rated_current", "rated_voltage", "third_harmonic", "starter")
+_OF_LOADS = (*LOADS, *_NAMEPLATE, "length_supplement")
 _SMALLEST_ALUMINIUM = 2.5
 # IEC 60269-1, 5.3.1
 _GG_RATINGS = (
@@ -118,6 +119,12 @@ def _overload_omitted(row: Row) -> None:
             row.fault("overload_omitted", f"{found}: what trips on overload does not go with overload_omitted")
 
 
+def _supplement_of_drop(row: Row) -> None:
+    if row.text("length_supplement") and row.text("drop_limit"):
+        found = f'drop_limit is "{row.text("drop_limit")}"'
+        row.fault("length_supplement", f"{found}: the supplement goes with the limits of Table G.52.1 only")
+
+
 _CONDITIONS: tuple[Callable[[Row], None], ...] = (
     _feeder,
     _one_load,
@@ -130,6 +137,7 @@ _CONDITIONS: tuple[Callable[[Row], None], ...] = (
     _overload_omitted,
     _cores,
     _size_of_aluminium,
+    _supplement_of_drop,
 )
 
 

@@ -33,19 +33,19 @@ def fill_gaps(
         data["rated_voltage"] = _nominal_as_rated(tag, data["phases"].text, basis, notes)
 
 
-def fill_basis(basis: dict[str, Datum]) -> None:
+def fill_basis(basis: dict[str, Datum], notes: Notes) -> None:
     """Add to the basis what it does not state and what has a safe value, each with its origin and a remark."""
-    origin = Origin("default", "basis", "length_tolerance", "assumed", remark="10 %, as none was stated.")
-    basis.setdefault("length_tolerance", Datum("10 %", Quantity(10.0, "%", "per_cent"), origin))
+    gaps = _Gaps("basis", basis, notes)
+    gaps.fill("length_tolerance", Quantity(10.0, "%", "per_cent"), "10 %, as none was stated.")
     remark = "The greatest temperature in service, the warmest, as none was stated."
     origin = Origin("default", "basis", "resistance_for_drop", "assumed", remark=remark)
-    basis.setdefault("resistance_for_drop", Datum("theta_max", None, origin))
+    filled = Datum("theta_max", None, notes.filled(origin, "basis", "resistance_for_drop"))
+    basis.setdefault("resistance_for_drop", filled)
 
 
-def fill_board(tag: str, board: dict[str, Datum]) -> None:
+def fill_board(tag: str, board: dict[str, Datum], notes: Notes) -> None:
     """Add to a board the diversity that it does not state: 1, the safe value."""
-    origin = Origin("default", tag, "diversity", "assumed", remark="1, the greatest, as none was stated.")
-    board.setdefault("diversity", Datum("1", Quantity(1.0, "1", "ratio"), origin))
+    _Gaps(tag, board, notes).fill("diversity", Quantity(1.0, "1", "ratio"), "1, the greatest, as none was stated.")
 
 
 def is_line_to_neutral(phases: str) -> bool:
@@ -64,7 +64,7 @@ def basis_ambient(method: str) -> str:
 
 
 class _Gaps:
-    """The data of one circuit while gaps in them are filled."""
+    """The data of one circuit, of a board or of the basis while gaps in them are filled."""
 
     def __init__(self, tag: str, data: dict[str, Datum], notes: Notes) -> None:
         self.tag, self.data, self.notes = tag, data, notes

@@ -8,7 +8,7 @@ from pathlib import Path
 
 from calcbook.errors import Fault, InputFaults
 from calcbook.inputs import adopted, circuits, notes, routes, settings
-from calcbook.inputs.adopted import AdoptedValues, read_adopted
+from calcbook.inputs.adopted import read_adopted
 from calcbook.inputs.circuits import Circuits, Surroundings, read_circuits
 from calcbook.inputs.faults import FaultList
 from calcbook.inputs.fields import fields_of
@@ -38,9 +38,13 @@ def read_project(folder: Path) -> Project:
     noted = read_notes(read_source(folder, notes.FILE, faults, needed=False), said.decimal(notes.FILE), faults)
     taken = read_adopted(read_source(folder, adopted.FILE, faults, needed=False), said.decimal(adopted.FILE), faults)
     data = _data(said, noted)
-    _fill(data)
+    _fill(data, noted)
     found = _circuits(folder, said, data, noted, faults)
-    _report_what_stands_for_nothing(said, found, noted, taken, faults)
+    # where a file could not be read at all, what refers to it is not judged
+    if found.columns and said.readable and not faults.stopped(circuits.FILE):
+        taken.report_unknown(found.columns)
+        _report_notes_on_nothing(data, found, noted, faults)
+        _report_unknown_references(said, found, faults)
     faults.raise_if_any()
     return Project(
         folder=str(folder),
@@ -86,13 +90,13 @@ def _data(said: Settings, noted: Notes) -> dict[str, dict[str, Datum]]:
     }
 
 
-def _fill(data: dict[str, dict[str, Datum]]) -> None:
+def _fill(data: dict[str, dict[str, Datum]], noted: Notes) -> None:
     """Add what the basis and the boards do not state and what has a safe value."""
     for tag, values in data.items():
         if tag == "basis":
-            fill_basis(values)
+            fill_basis(values, noted)
         elif tag.startswith("boards."):
-            fill_board(tag, values)
+            fill_board(tag, values, noted)
 
 
 def _circuits(
@@ -110,15 +114,16 @@ def _circuits(
     return found
 
 
-def _report_what_stands_for_nothing(
-    said: Settings, found: Circuits, noted: Notes, taken: AdoptedValues, faults: FaultList
+def _report_notes_on_nothing(
+    data: dict[str, dict[str, Datum]], found: Circuits, noted: Notes, faults: FaultList
 ) -> None:
-    """Report names that nothing has; where a file could not be read at all, what refers to it is not judged."""
-    if not found.columns or not said.readable or faults.stopped(circuits.FILE):
-        return
-    taken.report_unknown(found.columns)
+    """Report notes on what the inputs do not hold and calcbook does not fill in."""
     sound = not faults.any_in(settings.FILE)
-    noted.report_unknown(found.columns | {tag: data.keys() if sound else None for tag, data in said.values.items()})
+    noted.report_unknown(found.columns | {tag: values.keys() if sound else None for tag, values in data.items()})
+
+
+def _report_unknown_references(said: Settings, found: Circuits, faults: FaultList) -> None:
+    """Report names in inputs.toml that nothing has."""
     known = {kind: said.names_of(kind) for kind in TAGGED} | {"circuits": tuple(found.columns)}
     for tag, values in said.values.items():
         for key, value in values.items():

@@ -20,7 +20,7 @@ from calcbook.records.project import SignOff, TitleBlock
 FILE = "inputs.toml"
 TABLES = ("project", "basis", "files", "signed_off", "boards", "sources", "cases", "couplers")
 TAGGED = ("boards", "sources", "cases", "couplers")
-_CSV_FILES = ("circuits.csv", "routes.csv", "notes.csv", "adopted.csv")
+CSV_FILES = ("circuits.csv", "routes.csv", "notes.csv", "adopted.csv")
 _PLACE_IN_TOML = re.compile(r"(.*) \(at (line \d+, column \d+|end of document)\)", re.DOTALL)
 _IN_WORDS = {"Cannot overwrite a value": "a key stands twice in its table"}
 
@@ -71,8 +71,8 @@ def read_settings(text: str, faults: FaultList) -> Settings | None:
         faults.add(FILE, "", "no board; a project has at least one, such as [boards.MB]")
     settings.signed_off = _read_sign_offs(document.get("signed_off", {}), faults)
     for name, table in _tables_of("files", document.get("files", {}), faults):
-        if name not in _CSV_FILES:
-            faults.add(FILE, "[files]", f"{shown(name)} is not a file of the inputs; {nearest(name[:60], _CSV_FILES)}")
+        if name not in CSV_FILES:
+            faults.add(FILE, "[files]", f"{shown(name)} is not a file of the inputs; {nearest(name[:60], CSV_FILES)}")
         decimal = _read_table("files", f'files."{name}"', table, faults).get("decimal")
         settings.decimals[name] = decimal.text if decimal else "."
     return settings
@@ -142,7 +142,7 @@ def _flat(table: Mapping[str, object], fields: Mapping[str, Field]) -> Iterator[
 
 
 #: the standards whose clauses sheets cite beside the tables, which carry their own edition
-_CITED = ("IEC 60364-4-43", "IEC 60364-5-52")
+CITED = ("IEC 60364-4-43", "IEC 60364-5-52")
 
 
 def _read_editions(basis: object, faults: FaultList) -> dict[str, str]:
@@ -163,7 +163,7 @@ def _read_editions(basis: object, faults: FaultList) -> dict[str, str]:
             editions[standard] = str(edition).strip()
         if wrong:
             faults.add(FILE, "[basis.editions]", wrong)
-    for standard in _CITED:
+    for standard in CITED:
         if standard not in table:
             faults.add(FILE, "[basis.editions]", f'"{standard}" is missing; sheets cite it with its edition')
     return editions

@@ -67,6 +67,32 @@ def test_one_run_is_assumed_when_none_is_stated(tmp_path: Path) -> None:
     assert origin_of(tmp_path, "runs", "", runs="1").file == "circuits.csv"
 
 
+@pytest.mark.parametrize(
+    ("tag", "key", "text", "remark"),
+    [
+        ("boards.MB", "diversity", "1", "1, the greatest, as none was stated."),
+        ("basis", "length_tolerance", "10 %", "10 %, as none was stated."),
+        (
+            "basis",
+            "resistance_for_drop",
+            "theta_max",
+            "The greatest temperature in service, the warmest, as none was stated.",
+        ),
+    ],
+)
+def test_a_note_that_names_a_filled_key_speaks_of_it(
+    tmp_path: Path, tag: str, key: str, text: str, remark: str
+) -> None:
+    wanted = {
+        f"{tag},*,D-1,,,confirmed,\n": Origin("default", tag, key, "assumed", remark=remark),
+        f"{tag},{key},D-1,A,3,confirmed,agreed\n": Origin("default", tag, key, "confirmed", "D-1", "A", "3", "agreed"),
+    }
+    for notes, origin in wanted.items():
+        project = read(tmp_path, notes=NOTE_HEADS + notes)
+        datum = (project.basis if tag == "basis" else project.boards[0].data)[key]
+        assert (datum.text, datum.origin) == (text, origin)
+
+
 def test_ambient_of_the_basis_keeps_its_own_status(tmp_path: Path) -> None:
     found = origin_of(tmp_path, "ambient", "*,*,D-1,,,assumed,\nbasis,ambient_air,D-2,,,confirmed,\n")
     assert found == Origin("inputs.toml", "basis", "ambient_air", "confirmed", "D-2")
@@ -109,6 +135,7 @@ def test_kind_of_a_rated_voltage_follows_the_phases(tmp_path: Path, phases: str,
         ("C-1,drawing,D,,,,", "row 2, column: C-1 has no drawing: the note speaks of nothing"),
         ("basis,sise,D,,,,", None),
         ("basis,c_max,D,,,,", "row 2, column: basis has no c_max: the note speaks of nothing"),
+        ("boards.MB,location,D,,,,", "row 2, column: boards.MB has no location: the note speaks of nothing"),
         ("C-1,size,D,,,sure,", 'row 2, status: "sure" is not allowed; allowed: confirmed, assumed, to be confirmed'),
         ("C-1,,D,,,,", "row 2, column: is empty; it is needed in every row"),
         ("C-1,size,D,,,,\nC-1,size,E,,,,", 'row 3: a second note on "C-1", "size"; write one'),

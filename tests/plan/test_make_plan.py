@@ -207,6 +207,12 @@ def test_the_limit_of_the_drop_is_the_circuits_own_else_that_of_its_kind(project
     assert with_data(stated, drop_limit="2 %")["drop_limit"] == "2 %"
 
 
+def test_the_supplement_for_length_is_handed_over_only_when_claimed(project: Project, plan: Plan) -> None:
+    assert with_data(project)["length_supplement"] == ""
+    assert with_data(project, length_supplement="claimed")["length_supplement"] == "claimed"
+    assert all("length_supplement" not in sheet.parameters for sheet in plan.sheets if sheet.number.startswith("F-"))
+
+
 def test_the_setting_is_that_of_the_device_that_judges_overload(project: Project) -> None:
     assert with_data(project, setting_Ir="15 A")["overload_setting"] == "15 A"
     both = with_data(project, setting_Ir="15 A", overload_device="relay60947", overload_setting="12 A")
