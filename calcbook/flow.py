@@ -85,4 +85,5 @@ def _with_chosen_sizes(project: Project, results: tuple[SheetResult, ...]) -> Pr
 def _tables_used(project: Project, results: tuple[SheetResult, ...]) -> tuple[PrintedTable, ...]:
     """The tables that sheets cite, whole, each with its sign-off."""
     keys = dict.fromkeys(line.table for result in results for line in result.trace.lines if line.form == "table value")
-    return tuple(table(key).printed(project.signed_off.get(table(key).title)) for key in keys)
+    used = (table(key, project.tables) for key in keys)
+    return tuple(table.printed(project.signed_off.get(table.title)) for table in used)

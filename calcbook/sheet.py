@@ -9,6 +9,7 @@ sheet.criterion("design current", I_B <= I_r, cite="IEC 60364-4-43, 433.1 (1)", 
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
+from functools import partial
 from typing import Any
 
 from IPython.display import display
@@ -43,7 +44,7 @@ from calcbook.records.recompute import judge, judge_rule
 from calcbook.records.trace import line_from_json, line_to_json
 from calcbook.records.value import Choice, Comparison, Value
 from calcbook.records.written.tree import rename, symbols_of, write
-from calcbook.reference.table import table, tables
+from calcbook.reference.table import NO_OWN, table, tables
 
 _UNPUBLISHED = "no published example"
 
@@ -166,7 +167,7 @@ class Sheet:
         earlier = self._looked_up_before(keyed(name, key), table_key, bound)
         if earlier is not None:
             return earlier
-        source = table(table_key)
+        source = table(table_key, self.given.tables)
         keys: dict[str, str | Quantity] = {
             argument: value if isinstance(value, str) else value.text if isinstance(value, Choice) else value.quantity
             for argument, value in arguments.items()
@@ -199,7 +200,7 @@ class Sheet:
                     status=found.status,
                     conditions=source.header.get("conditions", ""),
                     signed_off=self.given.sign_off(source.title),
-                    remark="; ".join(filter(None, (found.remark, other_edition))),
+                    remark="; ".join(filter(None, (found.remark, other_edition, self.given.own_table(table_key)))),
                 ),
             )
         )
@@ -347,7 +348,7 @@ class Sheet:
                 unused[0],
                 f"adopted.csv has a value for it, but this sheet has no such step; {nearest(unused[0], steps)}",
             )
-        self._keep(conclusion(self._identity("conclusion"), self.lines, look_up))
+        self._keep(conclusion(self._identity("conclusion"), self.lines, partial(look_up, own=self.given.tables)))
 
     def _keep(self, line: Line) -> None:
         if any(line.label == other.label for other in self.lines):
@@ -381,9 +382,9 @@ class Sheet:
         return text
 
 
-def look_up(key: str, arguments: Mapping[str, str | Quantity]) -> Quantity:
-    """A table value without its citation: what recomputation is handed."""
-    return table(key).look_up(arguments).value
+def look_up(key: str, arguments: Mapping[str, str | Quantity], own: Mapping[str, str] = NO_OWN) -> Quantity:
+    """A table value without its citation, of `own` tables first: what recomputation is handed."""
+    return table(key, own).look_up(arguments).value
 
 
 def prime() -> None:

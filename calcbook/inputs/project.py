@@ -14,6 +14,7 @@ from calcbook.inputs.faults import FaultList
 from calcbook.inputs.fields import fields_of
 from calcbook.inputs.fill import fill_basis, fill_board
 from calcbook.inputs.notes import Notes, read_notes
+from calcbook.inputs.own_tables import read_own_tables
 from calcbook.inputs.refusals import report_refused_basis, report_refused_boards
 from calcbook.inputs.routes import read_routes
 from calcbook.inputs.settings import TAGGED, Settings, read_settings
@@ -25,14 +26,16 @@ from calcbook.records.project import Board, Datum, Project, Source
 def read_project(folder: Path) -> Project:
     """Read and validate the inputs of a project.
 
-    Parameters: `folder` with inputs.toml, circuits.csv and, where wanted, routes.csv, notes.csv and adopted.csv.
+    Parameters: `folder` with inputs.toml, circuits.csv and, where wanted, routes.csv, notes.csv, adopted.csv and
+    tables/*.csv.
     Result: the Project. Raises InputFaults with every fault found; nothing is written.
     """
     names = _names_in(folder)
     faults = FaultList()
     _report_capitals(names, faults)
+    own = read_own_tables(folder, faults)
     toml = read_source(folder, settings.FILE, faults, needed=True)
-    said = (read_settings(toml, faults) if toml is not None else None) or Settings(readable=False)
+    said = (read_settings(toml, faults, own.titles) if toml is not None else None) or Settings(readable=False)
     report_refused_basis(said.values.get("basis", {}), faults)
     report_refused_boards({tag: said.values[tag] for tag in said.values if tag.startswith("boards.")}, faults)
     noted = read_notes(read_source(folder, notes.FILE, faults, needed=False), said.decimal(notes.FILE), faults)
@@ -56,6 +59,7 @@ def read_project(folder: Path) -> Project:
         sources=tuple(Source(name, data[f"sources.{name}"]) for name in said.names_of("sources")),
         signed_off=said.signed_off,
         unused=_unused(folder, said, found),
+        tables=own.texts,
     )
 
 

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import re
 import tomllib
-from collections.abc import Iterator, Mapping
+from collections.abc import Collection, Iterator, Mapping
 from dataclasses import dataclass, field
 from functools import cache
 
@@ -49,8 +49,11 @@ class Settings:
         return tuple(tag.removeprefix(f"{kind}.") for tag in self.values if tag.startswith(f"{kind}."))
 
 
-def read_settings(text: str, faults: FaultList) -> Settings | None:
-    """Everything inputs.toml says, every fault reported; None where it is not TOML at all."""
+def read_settings(text: str, faults: FaultList, own_titles: Collection[str] = ()) -> Settings | None:
+    """Everything inputs.toml says, every fault reported; None where it is not TOML at all.
+
+    `own_titles` names the tables of the project, which may be signed off as those of calcbook.
+    """
     document = _parsed(text, faults)
     if document is None:
         return None
@@ -69,7 +72,7 @@ def read_settings(text: str, faults: FaultList) -> Settings | None:
             settings.values[f"{kind}.{name}"] = _read_table(kind, f"{kind}.{name}", table, faults)
     if not document.get("boards"):
         faults.add(FILE, "", "no board; a project has at least one, such as [boards.MB]")
-    settings.signed_off = _read_sign_offs(document.get("signed_off", {}), faults)
+    settings.signed_off = _read_sign_offs(document.get("signed_off", {}), own_titles, faults)
     for name, table in _tables_of("files", document.get("files", {}), faults):
         if name not in CSV_FILES:
             faults.add(FILE, "[files]", f"{shown(name)} is not a file of the inputs; {nearest(name[:60], CSV_FILES)}")
@@ -169,11 +172,11 @@ def _read_editions(basis: object, faults: FaultList) -> dict[str, str]:
     return editions
 
 
-def _read_sign_offs(item: object, faults: FaultList) -> dict[str, SignOff]:
+def _read_sign_offs(item: object, own_titles: Collection[str], faults: FaultList) -> dict[str, SignOff]:
     found = {}
     for name, table in _tables_of("signed_off", item, faults):
         values = _read_table("signed_off", f'signed_off."{name}"', table, faults)
-        if name not in _table_titles():
+        if name not in _table_titles() and name not in own_titles:
             message = f"{shown(name)} is not a table of calcbook; {nearest_name(name, _table_titles())}"
             faults.add(FILE, "[signed_off]", message)
         if len(values) == len(fields_of("signed_off")):

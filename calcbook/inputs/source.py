@@ -12,14 +12,18 @@ from calcbook.inputs.faults import FaultList
 LARGEST = {".toml": 2**20, ".csv": 64 * 2**20}
 
 
-def read_source(folder: Path, name: str, faults: FaultList, *, needed: bool) -> str | None:
-    """The text of `folder/name`; None, with a fault where that is one, when there is none to be had."""
+def read_source(folder: Path, name: str, faults: FaultList, *, needed: bool, largest: int = 0) -> str | None:
+    """The text of `folder/name`; None, with a fault where that is one, when there is none to be had.
+
+    `largest` is the allowed number of bytes where it is not that of the ending.
+    """
     path = folder / name
     if not needed and not os.path.lexists(path):
         return None
     try:
-        if path.stat().st_size > LARGEST[path.suffix]:
-            faults.add(name, "", f"has {path.stat().st_size} bytes; allowed are {LARGEST[path.suffix]}")
+        allowed = largest or LARGEST[path.suffix]
+        if path.stat().st_size > allowed:
+            faults.add(name, "", f"has {path.stat().st_size} bytes; allowed are {allowed}")
             return None
         data = path.read_bytes()
     except FileNotFoundError:

@@ -1,4 +1,4 @@
-"""What is handed to a workbook beside its parameters: origins, adopted values, sign-offs, editions."""
+"""What is handed to a workbook beside its parameters: origins, adopted values, sign-offs, editions, tables."""
 
 from __future__ import annotations
 
@@ -23,6 +23,7 @@ def given_of(
         "adopted": {label: _adopted(value) for label, value in adopted.items()},
         "signed_off": {table: asdict(sign_off) for table, sign_off in project.signed_off.items()},
         "editions": dict(project.editions),
+        "tables": dict(project.tables),
     }
 
 

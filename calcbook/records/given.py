@@ -14,8 +14,8 @@ from calcbook.records.quantity import Quantity, read_quantity
 @dataclass(frozen=True)
 class Given:
     """Number of the sheet; origin by parameter; adopted values by label of a line; sign-offs by table; editions by
-    standard; values brought forward by parameter. A repeated parameter has its key behind it: "shaft_power[C-014]".
-    Empty when a template runs alone.
+    standard; values brought forward by parameter; texts of the project's own tables by key. A repeated parameter has
+    its key behind it: "shaft_power[C-014]". Empty when a template runs alone.
     """
 
     sheet: str = "alone"
@@ -25,6 +25,7 @@ class Given:
     signed_off: Mapping[str, Any] = field(default_factory=dict)
     editions: Mapping[str, str] = field(default_factory=dict)
     brought_forward: Mapping[str, Any] = field(default_factory=dict)
+    tables: Mapping[str, str] = field(default_factory=dict)
 
     def origin(self, parameter: str) -> Origin:
         """Where a parameter's value comes from; alone it is a parameter of the run, to be confirmed."""
@@ -57,6 +58,10 @@ class Given:
         for standard, edition in self.editions.items():
             reference = reference.replace(f"{standard},", f"{standard}:{edition},")
         return reference
+
+    def own_table(self, key: str) -> str:
+        """What is printed where a table is the project's own, in place of calcbook's or beside them."""
+        return f"table of the project, tables/{key}.csv" if key in self.tables else ""
 
     def other_edition(self, standard: str, edition: str) -> str:
         """What is printed where the table in store is of another edition than the basis states."""

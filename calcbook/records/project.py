@@ -104,7 +104,8 @@ class Project:
     """Everything the inputs say, validated.
 
     `folder` is the project's path; `basis` by key; `editions` maps a standard to its edition; `signed_off` maps a
-    table ("IEC 60364-5-52:2009, B.52.4") to its sign-off; `unused` names accepted columns that no subject uses yet.
+    table ("IEC 60364-5-52:2009, B.52.4") to its sign-off; `unused` names accepted columns that no subject uses yet;
+    `tables` holds the texts of the project's own tables by key.
     """
 
     folder: str
@@ -116,6 +117,7 @@ class Project:
     sources: tuple[Source, ...] = ()
     signed_off: Mapping[str, SignOff] = field(default_factory=dict)
     unused: tuple[str, ...] = ()
+    tables: Mapping[str, str] = field(default_factory=dict)
 
 
 @dataclass(frozen=True)

@@ -15,6 +15,7 @@ from dataclasses import dataclass
 from functools import cache, cached_property
 from importlib.resources import files
 from pathlib import Path
+from types import MappingProxyType
 
 from calcbook.errors import LookUpFault, nearest
 from calcbook.records.dimension import factor
@@ -26,7 +27,9 @@ from calcbook.records.quantity import Quantity
 from calcbook.records.units import UNITS, kind_in_words
 
 Key = str | Quantity
-_NOT_KEYS = ("value", "status", "beyond")
+NO_OWN: Mapping[str, str] = MappingProxyType({})
+HEADERS = ("standard", "edition", "table", "title", "obtained", "value", "row")
+NOT_KEYS = ("value", "status", "beyond")
 
 
 @dataclass(frozen=True)
@@ -62,7 +65,7 @@ class Table:
     @cached_property
     def keys(self) -> dict[str, str]:
         """The key columns: name -> unit, "" for words."""
-        pairs = (head.rstrip("]").partition(" [") for head in self.heads if head not in _NOT_KEYS)
+        pairs = (head.rstrip("]").partition(" [") for head in self.heads if head not in NOT_KEYS)
         return {name: unit for name, _, unit in pairs}
 
     @cached_property
@@ -185,9 +188,15 @@ def _space(unit: str) -> str:
 
 def read_table(path: Path) -> Table:
     """Read one table file. Raises LookUpFault where its header or columns are not as described above."""
+    return parse_table(path.stem, path.read_text("utf-8"))
+
+
+@cache
+def parse_table(key: str, text: str) -> Table:
+    """The table of a file's text; `key` is the file's name without ending. Raises LookUpFault like `read_table`."""
     header: dict[str, str] = {}
     body: list[str] = []
-    for line in path.read_text("utf-8").splitlines():
+    for line in text.splitlines():
         if line.startswith("# "):
             name, _, value = line[2:].partition(": ")
             header[name] = value
@@ -196,12 +205,12 @@ def read_table(path: Path) -> Table:
     reader = csv.DictReader(body)
     rows = tuple(reader)
     heads = tuple(reader.fieldnames or ())
-    for wanted in ("standard", "edition", "table", "title", "obtained", "value", "row"):
+    for wanted in HEADERS:
         if wanted not in header:
-            raise LookUpFault(path.name, f'the header line "# {wanted}: ..." is missing')
+            raise LookUpFault(f"{key}.csv", f'the header line "# {wanted}: ..." is missing')
     if not {"value", "status"} <= set(heads) or not rows:
-        raise LookUpFault(path.name, "needs the columns value and status, and rows")
-    return Table(path.stem, header, heads, rows)
+        raise LookUpFault(f"{key}.csv", "needs the columns value and status, and rows")
+    return Table(key, header, heads, rows)
 
 
 @cache
@@ -212,8 +221,13 @@ def tables() -> dict[str, Table]:
     return {table.key: table for table in found}
 
 
-def table(key: str) -> Table:
-    """One table by key; LookUpFault with the nearest key where there is none."""
+def table(key: str, own: Mapping[str, str] = NO_OWN) -> Table:
+    """One table by key: of `own`, the texts of a project's tables by key, before those of the package.
+
+    Raises LookUpFault with the nearest key where there is none.
+    """
+    if key in own:
+        return parse_table(key, own[key])
     if key not in tables():
-        raise LookUpFault(key, f"there is no such table; {nearest(key, tables())}")
+        raise LookUpFault(key, f"there is no such table; {nearest(key, {*tables(), *own})}")
     return tables()[key]

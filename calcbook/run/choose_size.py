@@ -6,8 +6,9 @@ included. A size that is given is never changed; only an empty one is chosen.
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from dataclasses import asdict, replace
+from functools import partial
 
 from calcbook.errors import EvaluationFault, LookUpFault
 from calcbook.records.conclude import severity
@@ -38,12 +39,14 @@ def with_chosen_size(plan: SheetPlan, execute: Execute) -> SheetPlan:
     sheet shows what it does not meet; where the sheet cannot be executed with any, the fault is the sheet's own.
     """
     trial = execute(_sized(plan, _quantity(STANDARD_SIZES[-1]), ""))
+    tables = plan.given.get("tables")
+    own = tables if isinstance(tables, dict) else {}
     tried: list[str] = []
     largest = None
     for number in STANDARD_SIZES:
         size = _quantity(number)
         try:
-            failing = _first_failing(trial, size)
+            failing = _first_failing(trial, size, own)
         except LookUpFault:
             continue  # the tables of this cable and method begin or end elsewhere
         except EvaluationFault as fault:
@@ -57,11 +60,11 @@ def with_chosen_size(plan: SheetPlan, execute: Execute) -> SheetPlan:
     return _sized(plan, largest, _reason("no standard size meets every criterion; the largest is taken", tried))
 
 
-def _first_failing(trial: SheetResult, size: Quantity) -> str:
+def _first_failing(trial: SheetResult, size: Quantity, own: Mapping[str, str]) -> str:
     """The criterion that fails first with a size, the most severe of the trial before others; "" where none fails."""
     if not any(isinstance(line, DatumLine) and line.label == SIZE for line in trial.trace.lines):
         raise LookUpFault(trial.number, "the sheet has no size")
-    done = recompute(trial.trace.lines, {SIZE: size}, look_up)
+    done = recompute(trial.trace.lines, {SIZE: size}, partial(look_up, own=own))
     criteria = [line for line in trial.trace.lines if isinstance(line, InequalityLine | RuleLine)]
     failing = [line for line in criteria if done.verdicts[line.label] != "met"]
     failing.sort(key=lambda line: done.utilisations.get(line.label, severity(line)), reverse=True)
