@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from functools import partial
+
 from calcbook.formulas.derivation import Derivation, Stage, put_into, solved_for
 from calcbook.formulas.three_phase import APPARENT_OF_CURRENT, LINE_CURRENT
 
@@ -99,7 +101,7 @@ def _line_currents() -> list[Stage]:
                 "I_L",
                 formula.written,
                 f"{connection}: {law} solved for I",
-                derived=lambda given=given, power=power: solved_for(given, power, "I_L"),  # type: ignore[misc]
+                derived=partial(solved_for, given, power, "I_L"),
                 formula=formula.name,
             )
         )
@@ -111,7 +113,7 @@ def _line_currents() -> list[Stage]:
                 "S_1",
                 formula.written,
                 f"{connection}: S = {reason} of a load given by its current",
-                derived=lambda apparent=apparent: put_into(apparent, I_L="I_a"),  # type: ignore[misc]
+                derived=partial(put_into, apparent, I_L="I_a"),
                 formula=formula.name,
             )
         )

@@ -121,10 +121,10 @@ def _table_value(line: TableLine, setting: Setting) -> WorkRow:
     standard = f"{citation.standard}:{citation.edition}" if citation.edition else citation.standard
     cell = ", ".join(f"{name} {text}" for name, text in (("row", citation.row), ("column", citation.column)) if text)
     notes = [sentence("; ".join(text for text in (cell, citation.remark, compared(citation)) if text))]
-    if line.arguments:
-        notes.append(_arguments(line.arguments))
-    if citation.conditions:
-        notes.append(sentence(citation.conditions))
+    ending = f"; {citation.conditions}" if citation.conditions and line.arguments else citation.conditions
+    rests_on = _arguments(line.arguments) if line.arguments else ()
+    if rests_on or ending:
+        notes.append((*rests_on, *((Span(ending),) if ending else ())))
     return WorkRow(
         anchor=anchors.anchor(line.label),
         reference=(sentence(standard), sentence(numbered(citation.table))),
@@ -174,10 +174,9 @@ def _step(line: StepLine, setting: Setting) -> WorkRow:
     if line.bindings:
         equations.append(Equation(None, "=", Formula(node, texts_of(line), links)))
     notes = [_terms(binding.rests_on, binding.texts) for binding in line.bindings if len(binding.rests_on) > 1]
-    if line.valid:
-        notes.append(prose(f"holds for: {line.valid}"))
-    if line.remark:
-        notes.append(prose(line.remark))
+    said = "; ".join(text for text in (f"holds for: {line.valid}" if line.valid else "", line.remark) if text)
+    if said:
+        notes.append(prose(said))
     own = anchors.to_line(line.label)
     result = [_value(line, line.calculated_text, own)]
     if line.adopted:

@@ -173,7 +173,10 @@ TOGETHER = [
 UNSAFE = "is not covered yet, and leaving it out would be unsafe"
 NEUTRAL = {"phases": "L1L2L3N", "cores": "5"}
 NOT_COVERED = [
-    ({"size": ""}, "row 2, size [mm2]: choice of size is not covered yet; give a size"),
+    (
+        {"phases": "L1L2L3N", "cores": "5", "third_harmonic": "0 %", "size": "", "neutral_size": "16 mm2"},
+        "row 2, neutral_size: goes with a given size; with the size left to choose, the neutral equals the line",
+    ),
     ({"starter": "star_delta"}, f"row 2, starter: star-delta starting {UNSAFE}: six conductors, reclosing peak"),
     ({"starter": "converter"}, f"row 2, starter: a converter {UNSAFE}: its input current and its harmonics"),
     ({"insulation_covered": "0.1 m"}, f"row 2, insulation_covered: thermal insulation around a cable {UNSAFE}"),
