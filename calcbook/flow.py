@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections import defaultdict
 from collections.abc import Callable
 from dataclasses import dataclass, replace
 from pathlib import Path
@@ -16,7 +17,7 @@ from calcbook.records.printed_table import PrintedTable
 from calcbook.records.project import Datum, Plan, Project
 from calcbook.records.result import SheetResult
 from calcbook.reference.table import table
-from calcbook.run.choose_size import CHOSEN, SIZE
+from calcbook.run.choose_size import CHOSEN
 from calcbook.run.execute import execute_all
 
 Engine = Literal["warm", "kernel"]
@@ -69,16 +70,12 @@ def run_project(
 
 def _with_chosen_sizes(project: Project, results: tuple[SheetResult, ...]) -> Project:
     """The project with the sizes that the run chose beside the given ones, each with its reason as origin."""
-    chosen = {
-        line.sheet: Datum(line.text, line.value, line.origin)
-        for result in results
-        for line in result.trace.lines
-        if isinstance(line, DatumLine) and line.origin.file == CHOSEN
-    }
-    circuits = (
-        replace(circuit, data={**circuit.data, SIZE: chosen[circuit.tag]}) if circuit.tag in chosen else circuit
-        for circuit in project.circuits
-    )
+    chosen: dict[str, dict[str, Datum]] = defaultdict(dict)
+    for result in results:
+        for line in result.trace.lines:
+            if isinstance(line, DatumLine) and line.origin.file == CHOSEN:
+                chosen[line.sheet][line.parameter] = Datum(line.text, line.value, line.origin)
+    circuits = (replace(circuit, data={**circuit.data, **chosen[circuit.tag]}) for circuit in project.circuits)
     return replace(project, circuits=tuple(circuits))
 
 

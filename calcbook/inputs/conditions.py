@@ -108,6 +108,13 @@ def _size_of_aluminium(row: Row) -> None:
         row.fault("size", f'"{row.text("size")}" is not in the tables for Al; they begin at {_SMALLEST_ALUMINIUM} mm2')
 
 
+def _runs_at_most(row: Row) -> None:
+    for column in ("size", "runs"):
+        if row.text("runs_at_most") and row.text(column):
+            found = f'{column} is "{row.text(column)}"'
+            row.fault("runs_at_most", f"{found}: it goes with size and runs left empty, which are then chosen")
+
+
 def _overload_omitted(row: Row) -> None:
     if not row.text("overload_omitted"):
         return
@@ -137,6 +144,7 @@ _CONDITIONS: tuple[Callable[[Row], None], ...] = (
     _overload_omitted,
     _cores,
     _size_of_aluminium,
+    _runs_at_most,
     _supplement_of_drop,
 )
 

@@ -29,7 +29,13 @@ def circuit_sheet(circuit: Circuit, project: Project, network: Network) -> Sheet
         {**texts_of(data), "route": parts, **lines},
         given_of(project, circuit.tag, circuit.description, {**data, **of_parts}, by_line(circuit.adopted)),
         rests_on=rests_on,
+        runs_at_most=_runs_at_most(circuit),
     )
+
+
+def _runs_at_most(circuit: Circuit) -> int:
+    stated = circuit.data.get("runs_at_most")
+    return int(stated.quantity.number) if stated and stated.quantity else 1
 
 
 def _from_board(circuit: Circuit) -> _RestsOn:

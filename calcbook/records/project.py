@@ -126,7 +126,8 @@ class SheetPlan:
 
     `parameters` by template parameter name, texts as entered (repeated ones as a dict of texts by key); `given` is the
     reserved parameter of the same name. A board's sheet has two workbooks: `part` is "demand" or "supply". `rests_on`
-    names, by parameter, the workbook and the line whose value is brought forward.
+    names, by parameter, the workbook and the line whose value is brought forward; `runs_at_most` parallel runs may be
+    chosen with an empty size.
     """
 
     number: str
@@ -136,6 +137,7 @@ class SheetPlan:
     given: Mapping[str, object]
     part: str = ""
     rests_on: Mapping[str, tuple[str, str]] = field(default_factory=dict)
+    runs_at_most: int = 1
 
     @property
     def name(self) -> str:

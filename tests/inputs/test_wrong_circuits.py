@@ -174,6 +174,10 @@ UNSAFE = "is not covered yet, and leaving it out would be unsafe"
 NEUTRAL = {"phases": "L1L2L3N", "cores": "5"}
 NOT_COVERED = [
     (
+        {"runs_at_most": "3"},
+        'row 2, runs_at_most: size is "25 mm2": it goes with size and runs left empty, which are then chosen',
+    ),
+    (
         {"phases": "L1L2L3N", "cores": "5", "third_harmonic": "0 %", "size": "", "neutral_size": "16 mm2"},
         "row 2, neutral_size: goes with a given size; with the size left to choose, the neutral equals the line",
     ),

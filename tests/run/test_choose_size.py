@@ -82,6 +82,21 @@ def test_sizes_that_the_table_lacks_are_passed_over(tmp_path: Path) -> None:
     assert size.origin.remark == "the smallest standard size that meets every criterion"
 
 
+def test_more_runs_are_chosen_where_asked(tmp_path: Path) -> None:
+    large = plan(design_current="500 A", overload_setting="500 A", rating="630 A", runs="1")
+    assert "not met" in verdicts(made(large, tmp_path)).values()
+    result = made(replace(large, runs_at_most=3), tmp_path)
+    runs = next(line for line in result.trace.lines if isinstance(line, DatumLine) and line.label == "n")
+    assert set(verdicts(result).values()) == {"met"}
+    assert runs.value.number == 2  # the fewest that serve
+    assert runs.origin.file == "chosen by calcbook"
+    reasons = size_of(result).origin.remark
+    assert "300\N{NO-BREAK SPACE}mm² " in reasons
+    assert "2 × 185\N{NO-BREAK SPACE}mm² terminal temperature" in reasons
+    smaller = made(replace(large, parameters={**large.parameters, "runs": "2", "size": "185 mm2"}), tmp_path)
+    assert verdicts(smaller)["terminal temperature"] == "not met"
+
+
 def test_one_execution_serves_all_sizes(tmp_path: Path) -> None:
     executed: list[str] = []
 
