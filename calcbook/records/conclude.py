@@ -20,17 +20,21 @@ from calcbook.records.line import (
 )
 from calcbook.records.recompute import LookUp, recompute
 
+_LENGTH = "l"  # the line of the route length
+
 
 def conclusion(identity: Mapping[str, Any], lines: Sequence[Line], look_up: LookUp) -> ConclusionLine:
     """The conclusion of the lines so far.
 
     The governing criterion is the one with the highest utilisation; a rule that is not met governs before all. The
-    headroom of the governing inequality and of the next is worked out.
+    headroom of the governing inequality and of the next is worked out, and wherever it is one of length: the greatest
+    length is asked of every circuit.
     """
     criteria = [line for line in lines if isinstance(line, InequalityLine | RuleLine)]
     order = sorted(criteria, key=severity, reverse=True)
     inequalities = [line for line in order if isinstance(line, InequalityLine)]
-    rooms = (headroom(lines, criterion, look_up) for criterion in inequalities[:2])
+    wanted = inequalities[:2] + [line for line in inequalities[2:] if line.headroom_of == _LENGTH]
+    rooms = (headroom(lines, criterion, look_up) for criterion in wanted)
     return ConclusionLine(
         **identity,
         verdict=verdict_of(criteria),
