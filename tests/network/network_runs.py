@@ -47,7 +47,10 @@ def executed(plan: Plan) -> dict[str, dict[str, Line]]:
 def _executed(sheet: SheetPlan, done: Mapping[str, Lines]) -> dict[str, Line]:
     notebook = assemble(sheet, [find_template(name) for name in sheet.templates])
     brought = {name: _brought(done[workbook][label]) for name, (workbook, label) in sheet.rests_on.items()}
-    stated = {**sheet.parameters, "given": {**sheet.given, "brought_forward": brought}}
+    size = (
+        {"size": sheet.parameters["size"] or "4 mm2"} if "size" in sheet.parameters else {}
+    )  # any: not what is tested
+    stated = {**sheet.parameters, **size, "given": {**sheet.given, "brought_forward": brought}}
     source = "\n".join(f"{name} = {value!r}" for name, value in stated.items())
     notebook.cells.insert(1, new_code_cell(source))
     run = run_notebook(notebook)
