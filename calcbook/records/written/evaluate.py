@@ -135,13 +135,14 @@ class _Evaluator:
         return left**right
 
     def sum(self, body: Node) -> Any:
-        keyed = {write(symbol) for symbol in symbols_of(body) if isinstance(self.values.get(write(symbol)), Sequence)}
-        lengths = {len(self.values[name]) for name in keyed}  # type: ignore[arg-type]
+        bound = ((write(symbol), self.values.get(write(symbol))) for symbol in symbols_of(body))
+        keyed = {name: values for name, values in bound if isinstance(values, Sequence)}
+        lengths = {len(values) for values in keyed.values()}
         if len(lengths) != 1:
             raise ValueError("sum( ) needs symbols that stand for the same lines")
         total = self.arithmetic.number("0")
         for index in range(lengths.pop()):
-            single = {name: self.values[name][index] for name in keyed}  # type: ignore[index]
+            single = {name: values[index] for name, values in keyed.items()}
             total = total + _Evaluator(self.arithmetic, {**self.values, **single}).of(body)
         return total
 

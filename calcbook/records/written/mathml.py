@@ -20,8 +20,8 @@ def values(node: Node, texts: Texts, links: Mapping[str, str] | None = None) -> 
     return Layout(_MathML(links or {}), texts).of(node)
 
 
-def symbol(label: str, link: str = "") -> str:
-    """One symbol of the notation list, with its key as a further subscript; `link` makes it a link."""
+def symbol(label: str) -> str:
+    """One symbol of the notation list, with its key as a further subscript."""
     name, _, key = label.partition("[")
     entry = notation().get(name)
     if entry is None:
@@ -32,7 +32,7 @@ def symbol(label: str, link: str = "") -> str:
         letter = f"<msub>{letter}<mtext>{escape(subscript)}</mtext></msub>"
     if entry.function:
         letter = f'<mrow><mi>{escape(entry.function)}</mi><mspace width="0.17em"/>{letter}</mrow>'
-    return f'<mrow href="{escape(link)}">{letter}</mrow>' if link else letter
+    return letter
 
 
 class _MathML:
