@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import dataclass
+from functools import cache, cached_property
 from typing import Any
 
 import sympy
@@ -31,6 +32,12 @@ class Stage:
     formula: str = ""
 
 
+@cache
+def _derived(stage: Stage) -> Any:
+    """What the algebra reaches for a stage: asked for by its proof and by its print."""
+    return stage.derived() if stage.derived else None
+
+
 @dataclass(frozen=True)
 class Derivation:
     """A subject's derivation; `key` gives the sheet number D-key."""
@@ -39,6 +46,7 @@ class Derivation:
     title: str
     stages: tuple[Stage, ...]
 
+    @cached_property
     def premises(self) -> dict[Any, Any]:
         """The premises as substitutions; those whose left side is not a single symbol are laws, not definitions."""
         pairs = ((expression(stage.left), expression(stage.right)) for stage in self.stages if stage.is_premise)
@@ -48,7 +56,7 @@ class Derivation:
         """The expression that the algebra reaches for `left`, as a written form; "" where the grammar has none."""
         if stage.is_premise or stage.derived is None:
             return ""
-        text = str(stage.derived()).replace("**", "^").replace("Abs(", "abs(").replace("Max(", "max(")
+        text = str(_derived(stage)).replace("**", "^").replace("Abs(", "abs(").replace("Max(", "max(")
         try:
             parse(text)
         except WrittenFormFault:
@@ -57,7 +65,7 @@ class Derivation:
 
     def prove(self, stage: Stage) -> str:
         """Prove one stage; the sentence that is printed. Raises DimensionFault where the difference is not zero."""
-        reached = stage.derived() if stage.derived else expression(stage.left)
+        reached = _derived(stage) if stage.derived else expression(stage.left)
         difference = self._expanded(reached) - self._expanded(expression(stage.right))
         remainder = sympy.simplify(difference)
         if remainder != 0:
@@ -68,7 +76,7 @@ class Derivation:
         return "its difference from what the algebra reaches simplifies to 0"
 
     def _expanded(self, reached: Any) -> Any:
-        premises = self.premises()
+        premises = self.premises
         for _ in range(3):  # definitions rest on definitions at most three deep
             reached = reached.subs(premises)
         return reached.doit().rewrite(sympy.Abs)  # max(a, b) as (a + b + |a - b|)/2, which algebra can compare
